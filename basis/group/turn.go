@@ -118,6 +118,9 @@ func (t Turn) Complex() complex128 {
 		rest = t.Den - rest
 	}
 	s, c := math.Sincos(float64(rest) / float64(t.Den) * math.Pi / 4)
+	if rest == t.Den {
+		s, c = math.Sqrt2/2, math.Sqrt2/2
+	}
 	switch eighths {
 	case 0:
 		return complex(c, s)
