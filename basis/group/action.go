@@ -170,7 +170,7 @@ func (a Action) Inverse() Action {
 }
 
 // Equal reports whether a and b do the same to every product state.
-func (a Action) Equal(b Action) bool { return a.key() == b.key() }
+func (a Action) Equal(b Action) bool { return a.Key() == b.Key() }
 
 // IsIdentity reports whether a changes nothing.
 func (a Action) IsIdentity() bool {
@@ -178,8 +178,8 @@ func (a Action) IsIdentity() bool {
 	return c.Sites.IsIdentity() && c.Levels == nil && c.Phases == nil
 }
 
-// key is a text that is the same for equal actions and only for these.
-func (a Action) key() string {
+// Key returns a text that is the same for equal actions and only for these.
+func (a Action) Key() string {
 	a = a.tidy()
 	var b strings.Builder
 	fmt.Fprint(&b, []int(a.Sites))

@@ -48,11 +48,11 @@ func Generate(gens []Eigenvalue) ([]Element, error) {
 		}
 	}
 	elements := []Element{{Action: Translate(Identity(n)), Turn: Turn{0, 1}}}
-	place := map[string]int{elements[0].Action.key(): 0}
+	place := map[string]int{elements[0].Action.Key(): 0}
 	for next := 0; next < len(elements); next++ {
 		for i, g := range gens {
 			product := Element{g.Generator.Compose(elements[next].Action), g.Turn.Add(elements[next].Turn)}
-			key := product.Action.key()
+			key := product.Action.Key()
 			at, known := place[key]
 			if !known {
 				if len(elements) == LargestOrder {
