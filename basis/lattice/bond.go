@@ -6,7 +6,7 @@ import "fmt"
 // needs; the other fields are filled by [Cluster.Bonds].
 type Bond struct {
 	From, To     int
-	Shell        int        // neighbour shell, 1 = nearest
+	Shell        int        // neighbour shell, 1 = nearest; 0 if chosen by its displacement
 	Displacement [2]float64 // Cartesian, from From to To along this bond
 	Cells        [2]int     // cell displacement before folding
 	Wrap         [2]int     // how often the bond crosses period 1 and 2, in their positive direction
@@ -57,6 +57,26 @@ func (c *Cluster) Bonds(shell int) ([]Bond, error) {
 		return nil, fmt.Errorf("lattice: no two sites of this cluster (%v) are neighbours of shell %d (distance %.4g); use a larger cluster or a nearer shell", c, shell, steps[0].distance)
 	}
 	return bonds, nil
+}
+
+// BondTo returns the bond that leads from a site to an orbital of the cell that
+// lies cells away (in a1, a2), with Shell 0. ok is false where there is no such
+// site, and where the bond would join the site to itself.
+func (c *Cluster) BondTo(site int, cells [2]int, orbital int) (bond Bond, ok bool) {
+	const far = 1 << 30
+	if site < 0 || site >= c.Sites() || orbital < 0 || orbital >= c.Orbitals() ||
+		cells[0] > far || cells[0] < -far || cells[1] > far || cells[1] < -far {
+		return Bond{}, false
+	}
+	cell, from := c.CellOf(site)
+	number, wrap, ok := c.cellAt([2]int{cell[0] + cells[0], cell[1] + cells[1]})
+	to := number*c.Orbitals() + orbital
+	if !ok || to == site {
+		return Bond{}, false
+	}
+	offset := minus(c.lattice.Sites[orbital], c.lattice.Sites[from])
+	vector := plus(offset, c.lattice.point(float64(cells[0]), float64(cells[1])))
+	return Bond{From: site, To: to, Displacement: vector, Cells: cells, Wrap: wrap}, true
 }
 
 // Simple returns the bonds without those that join two sites which an earlier

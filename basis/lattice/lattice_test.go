@@ -259,6 +259,13 @@ func TestBondsAreCarriedToBondsByTranslations(t *testing.T) {
 				if d := minus(plus(c.Position(b.From), b.Displacement), end); length(d) > 1e-9 {
 					t.Fatalf("%v: bond %+v ends at a distance %v from its site", c, b, d)
 				}
+				again, ok := c.BondTo(b.From, b.Cells, b.To%c.Orbitals())
+				if again.Shell = b.Shell; !ok || length(minus(again.Displacement, b.Displacement)) > 1e-12 {
+					t.Fatalf("%v: bond %+v is %+v by its displacement", c, b, again)
+				}
+				if again.Displacement = b.Displacement; again != b {
+					t.Fatalf("%v: bond %+v is %+v by its displacement", c, b, again)
+				}
 				if math.Abs(c.Distance(b.From, b.To)-length(b.Displacement)) > 1e-9 || b.From == b.To {
 					t.Fatalf("%v: bond %+v joins sites at the distance %v", c, b, c.Distance(b.From, b.To))
 				}
@@ -307,6 +314,12 @@ func TestOpenClusters(t *testing.T) {
 	}
 	if c.SiteAt([2]int{5, 0}, 0) != -1 || c.SiteAt([2]int{-1, 0}, 0) != -1 || c.SiteAt([2]int{0, 1}, 0) != -1 || c.SiteAt([2]int{0, 0}, 1) != -1 {
 		t.Error("a site beyond the end of an open chain")
+	}
+	if _, ok := c.BondTo(4, [2]int{1, 0}, 0); ok {
+		t.Error("a bond beyond the end of an open chain")
+	}
+	if _, ok := must(t)(Ring(4)).BondTo(1, [2]int{4, 0}, 0); ok {
+		t.Error("a bond from a site to itself")
 	}
 	if len(c.Momenta()) != 1 || c.Sector(c.Momenta()[0]) != nil {
 		t.Error("an open chain has translations")

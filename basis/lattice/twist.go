@@ -24,15 +24,17 @@ const (
 // phases around any closed loop are equal in both gauges, exp(-2πi·twist[j])
 // for a loop once along period j, so that the momenta of one particle become
 // 2π(n+twist)/L. Multiples of an eighth of a turn are exact. The twist along
-// an open direction has no effect. The bond must be made by [Cluster.Bonds]:
-// one made by hand (Shell 0), and any other gauge, give a phase that is not a
-// number, which an operator refuses.
+// an open direction has no effect. The bond must be made by [Cluster.Bonds]
+// or [Cluster.BondTo]: one without a displacement, and any other gauge, give a
+// phase that is not a number, which an operator refuses.
 func (c *Cluster) BondPhase(b Bond, twist [2]float64, gauge Gauge) complex128 {
 	var share [2]float64
 	switch {
-	case gauge == Uniform && b.Shell > 0:
+	case b.Displacement == [2]float64{}:
+		return complex(math.NaN(), math.NaN())
+	case gauge == Uniform:
 		share[0], share[1] = c.shares(b.Displacement)
-	case gauge == Boundary && b.Shell > 0:
+	case gauge == Boundary:
 		share[0], share[1] = float64(b.Wrap[0]), float64(b.Wrap[1])
 	default:
 		return complex(math.NaN(), math.NaN())
