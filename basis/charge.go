@@ -37,6 +37,7 @@ func (q Charge) Of(s *Space, c Configuration) int {
 	return q.reduce(total)
 }
 
+// reduce brings a value between 0 and Modulus-1, where there is a modulus.
 func (q Charge) reduce(v int) int {
 	if q.Modulus == 0 {
 		return v
@@ -108,8 +109,10 @@ func (s *Space) Weighted(name string, modulus int, weights []int) Charge {
 	return q
 }
 
-// check reports why q is not a charge of the space.
-func (q Charge) check(s *Space) error {
+// Check reports why q is not a charge of the space: weights for other sites or
+// levels, an impossible modulus, weights that are too large, or weights on an
+// electron site that do not add up.
+func (q Charge) Check(s *Space) error {
 	if len(q.Weights) != len(s.sites) {
 		return fmt.Errorf("basis: the charge %q has weights for %d sites, the space has %d; give one list of weights a site", q.Name, len(q.Weights), len(s.sites))
 	}
@@ -133,9 +136,10 @@ func (q Charge) check(s *Space) error {
 	return nil
 }
 
-// modeWeights returns the weights by mode and level, and the constant that the
-// charge has besides them.
-func (q Charge) modeWeights(s *Space) (weights [][]int, constant int) {
+// ModeWeights returns the charge by modes, Q(c) = constant + Σ_m
+// weights[m][level of mode m], with nothing on the lowest levels. The charge
+// must pass [Charge.Check].
+func (q Charge) ModeWeights(s *Space) (weights [][]int, constant int) {
 	weights = make([][]int, len(s.modes))
 	for m, mode := range s.modes {
 		w := q.Weights[mode.Site]

@@ -41,7 +41,7 @@ func newLadder(space *Space, charges []ChargeValue) (*ladder, error) {
 	target := make([]int, len(charges))
 	for j, q := range charges {
 		var constant int
-		weights[j], constant = q.Charge.modeWeights(space)
+		weights[j], constant = q.Charge.ModeWeights(space)
 		target[j] = q.Charge.reduce(q.Value - constant)
 	}
 	reach := reachable(space, charges, weights)

@@ -24,7 +24,7 @@ var ErrEmpty = errors.New("the sector holds no state")
 // charge or a constraint.
 func (k Sector) check(space *Space) error {
 	for _, q := range k.Charges {
-		if err := q.Charge.check(space); err != nil {
+		if err := q.Charge.Check(space); err != nil {
 			return err
 		}
 		if q.Value > LargestWeight*MostBits || q.Value < -LargestWeight*MostBits {
@@ -57,7 +57,7 @@ func (k Sector) check(space *Space) error {
 // charge of the image is the charge itself plus nothing, or minus the charge
 // plus what makes up for it.
 func (q ChargeValue) preserved(space *Space, mv *Mover) bool {
-	w, constant := q.Charge.modeWeights(space)
+	w, constant := q.Charge.ModeWeights(space)
 	for _, sign := range []int{1, -1} {
 		shift, ok := 0, true
 		for m := range w {
