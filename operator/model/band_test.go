@@ -158,7 +158,7 @@ func TestChernNumbers(t *testing.T) {
 func TestChernNumbersOfAllBandsAddUpToZero(t *testing.T) {
 	r := rand.New(rand.NewPCG(25, 26))
 	done, nonzero := 0, 0
-	for done < 3 {
+	for done < 6 {
 		m := randomBands(r, 2+r.IntN(2))
 		sum, ok := 0, true
 		for b := range m.Orbitals() {
