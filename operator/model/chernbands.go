@@ -28,7 +28,8 @@ const (
 //	z = 2·t2 (cos kx - cos ky)
 //
 // with k in the periodic gauge. The t3 term changes the energies but not the
-// states. Neighbouring sites repel with strength v: A(r) and B(r+d) with d =
+// states. The lower band has the Chern number -1 at t2 > 0, by the orientation
+// of [TightBinding.Chern]. Neighbouring sites repel with strength v: A(r) and B(r+d) with d =
 // (0,0), (-1,0), (0,1), (-1,1).
 func Checkerboard(t1, t2, t3, v float64) TightBinding {
 	m := TightBinding{Name: "checkerboard", Lattice: lattice.Checkerboard()}

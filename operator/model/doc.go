@@ -41,5 +41,5 @@
 //
 // # Arrows
 //
-// This package may import operator, basis, basis/lattice and basis/group.
+// This package may import operator, basis and basis/lattice.
 package model
