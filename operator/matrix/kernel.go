@@ -1,0 +1,87 @@
+package matrix
+
+import (
+	"math/bits"
+
+	"ketloom/basis"
+	"ketloom/operator"
+)
+
+// kernel is a canonical term compiled to masks. On a configuration c with
+// c&mask == value it gives the configuration c^flip with the amplitude
+//
+//	coefficient · (-1)^popcount(c&signs).
+type kernel struct {
+	mask, value uint64
+	flip        uint64
+	signs       uint64
+	coefficient complex128
+}
+
+// compile translates the canonical form of op; those that leave a configuration
+// as it is come apart from the others.
+func compile(op operator.Operator) (diagonal, moving []kernel) {
+	op = op.NormalOrdered()
+	for i := range op.Len() {
+		k := compileTerm(op.Space(), op.At(i))
+		if k.flip == 0 {
+			diagonal = append(diagonal, k)
+		} else {
+			moving = append(moving, k)
+		}
+	}
+	return diagonal, moving
+}
+
+// compileTerm follows the factors from the right: each meets the configuration
+// that those before it have made.
+func compileTerm(space *basis.Space, t operator.Term) kernel {
+	k := kernel{coefficient: t.Coefficient}
+	for i := len(t.Factors) - 1; i >= 0; i-- {
+		f := t.Factors[i]
+		mode := space.Mode(f.Mode)
+		field := uint64(1<<mode.Width-1) << mode.Shift
+		bit := uint64(1) << mode.Shift
+		switch f.Symbol {
+		case operator.Number:
+			k.mask |= bit
+			k.value |= bit
+		case operator.SpinZ:
+			k.signs ^= bit
+			k.coefficient *= -0.5
+		case operator.Raise:
+			k.mask |= bit
+			k.jump(space, mode, bit)
+		case operator.Lower:
+			k.mask |= bit
+			k.value |= bit
+			k.jump(space, mode, bit)
+		case operator.Transfer:
+			k.mask |= field
+			k.value |= uint64(f.From) << mode.Shift
+			k.flip |= uint64(f.From^f.To) << mode.Shift
+		}
+	}
+	return k
+}
+
+// jump flips a two-level mode; a fermion takes the sign of the occupied
+// fermion modes below it.
+func (k *kernel) jump(space *basis.Space, mode basis.Mode, bit uint64) {
+	if mode.Fermionic {
+		below := uint64(space.FermionBits()) & (bit - 1)
+		k.signs ^= below
+		if bits.OnesCount64(k.flip&below)%2 == 1 {
+			k.coefficient = -k.coefficient
+		}
+	}
+	k.flip ^= bit
+}
+
+// amplitude returns the amplitude of the kernel on c, which it must match.
+func (k *kernel) amplitude(c uint64) complex128 {
+	if bits.OnesCount64(c&k.signs)&1 == 1 {
+		return -k.coefficient
+	}
+	return k.coefficient
+}

@@ -1,0 +1,96 @@
+package matrix
+
+import (
+	"math"
+	"slices"
+
+	"ketloom/basis"
+)
+
+// rows computes the rows of the matrix of an operator O between two bases:
+//
+//	⟨i~|O|j~⟩ = (⟨j~|O†|i~⟩)*,
+//
+// so that row i is what O† makes of state i of the target basis, expressed in
+// the source basis. For an O that carries the source sector into the target
+// sector it is (amplitude · χ(h)*ε)* (N_j/N_i)^½.
+type rows struct {
+	to, from         *basis.Basis
+	diagonal, moving []kernel // of O†
+	phases           []complex128
+	unfold           bool // target without symmetry, source with one
+}
+
+// element is a matrix element in a row.
+type element struct {
+	column int
+	value  complex128
+}
+
+// scratch is the working memory of one goroutine.
+type scratch struct {
+	elements []element
+}
+
+// row returns the elements of row i in ascending column order, each column
+// once, with the diagonal apart where both bases are the same. The slice is
+// valid until the next call with the same scratch.
+func (r *rows) row(i int, s *scratch) (elements []element, diagonal complex128) {
+	c := uint64(r.to.At(i))
+	s.elements = s.elements[:0]
+	var here complex128
+	for k := range r.diagonal {
+		if d := &r.diagonal[k]; c&d.mask == d.value {
+			here += d.amplitude(c)
+		}
+	}
+	if here != 0 {
+		r.add(s, i, c, here)
+	}
+	for k := range r.moving {
+		if m := &r.moving[k]; c&m.mask == m.value {
+			r.add(s, i, c^m.flip, m.amplitude(c))
+		}
+	}
+	elements = merge(s.elements)
+	if r.to != r.from {
+		return elements, 0
+	}
+	if at, ok := slices.BinarySearchFunc(elements, i, func(e element, i int) int { return e.column - i }); ok {
+		diagonal = elements[at].value
+		elements = slices.Delete(elements, at, at+1)
+	}
+	return elements, diagonal
+}
+
+// add puts the amplitude of O† on c into the row.
+func (r *rows) add(s *scratch, i int, c uint64, amplitude complex128) {
+	j, phase, ok := r.from.Locate(basis.Configuration(c))
+	if !ok {
+		return
+	}
+	value := amplitude * r.phases[phase]
+	a, b := r.from.Stabiliser(j), r.to.Stabiliser(i)
+	switch {
+	case r.unfold: // ⟨j~|c⟩ of an orbit with |G|/|G_j| members
+		value *= complex(math.Sqrt(float64(a)/float64(r.from.GroupOrder())), 0)
+	case a != b:
+		value *= complex(math.Sqrt(float64(a)/float64(b)), 0)
+	}
+	s.elements = append(s.elements, element{j, complex(real(value), -imag(value))})
+}
+
+// merge sorts the elements by column and adds up those of the same column, in
+// the order in which they were made.
+func merge(list []element) []element {
+	slices.SortStableFunc(list, func(a, b element) int { return a.column - b.column })
+	out := list[:0]
+	for _, e := range list {
+		if n := len(out); n > 0 && out[n-1].column == e.column {
+			out[n-1].value += e.value
+			continue
+		}
+		out = append(out, e)
+	}
+	return slices.DeleteFunc(out, func(e element) bool { return e.value == 0 })
+}
