@@ -32,7 +32,7 @@
 // worst; for a few levels of something larger use package lanczos.
 //
 // The bits of a result depend neither on the number of processors nor on the load
-// of the machine. Asking for vectors may change the last bits of the eigenvalues.
+// of the machine, and eigenvalues are the same with vectors and without.
 //
 // # References
 //

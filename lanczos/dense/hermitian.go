@@ -1,5 +1,7 @@
 package dense
 
+import "slices"
+
 // EigenComplex returns all eigenvalues, ascending, of the complex Hermitian n×n
 // matrix a (row after row, not modified), and with vectors set the orthonormal
 // eigenvectors, vecs[j*n:(j+1)*n] for values[j]; vecs is nil otherwise.
@@ -35,14 +37,15 @@ func EigenComplex(a []complex128, n int, vectors bool) (values []float64, vecs [
 	panels := m.reduce(vectors)
 	d, e := m.diagonal, m.off
 	if !vectors {
-		if err := eigenvaluesOf(d, e); err != nil {
+		if err := diagonalise(d, e, nil); err != nil {
 			return nil, nil, err
 		}
 		rescale(d, exponent)
+		slices.Sort(d)
 		return d, nil, nil
 	}
 	z := identityReal(n, true)
-	if err := eigenvectorsOf(d, e, z); err != nil {
+	if err := diagonalise(d, e, z); err != nil {
 		return nil, nil, err
 	}
 	rescale(d, exponent)

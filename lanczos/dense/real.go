@@ -43,6 +43,7 @@ func EigenReal(a []float64, n int, vectors bool) (values []float64, vecs []float
 	}
 	rescale(values, exponent)
 	if !vectors {
+		slices.Sort(values)
 		return values, nil, nil
 	}
 	order := ascending(values)
@@ -54,8 +55,8 @@ func EigenReal(a []float64, n int, vectors bool) (values []float64, vecs []float
 	return pick(values, order), vecs, nil
 }
 
-// eigenSymmetric puts the eigenvalues of m into d, ascending unless vectors are
-// wanted, which then replace m as columns.
+// eigenSymmetric puts the eigenvalues of m into d, in no order; vectors, if wanted,
+// replace m as columns.
 func eigenSymmetric(m []float64, n int, d, e []float64, vectors bool) error {
 	impl := gonum.Implementation{}
 	tau := make([]float64, n-1)
@@ -64,10 +65,10 @@ func eigenSymmetric(m []float64, n int, d, e []float64, vectors bool) error {
 	work := make([]float64, max(int(size[0]), 64*n))
 	impl.Dsytrd(blas.Lower, n, m, n, d, e, tau, work, len(work))
 	if !vectors {
-		return eigenvaluesOf(d, e)
+		return diagonalise(d, e, nil)
 	}
 	impl.Dorgtr(blas.Lower, n, m, n, tau, work, len(work))
-	return eigenvectorsOf(d, e, m)
+	return diagonalise(d, e, m)
 }
 
 func symmetricCopy(a []float64, n, exponent int) []float64 {

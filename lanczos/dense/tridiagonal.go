@@ -3,8 +3,6 @@ package dense
 import (
 	"fmt"
 	"math"
-
-	"gonum.org/v1/gonum/lapack/gonum"
 )
 
 const epsilon = 0x1p-52
@@ -12,27 +10,16 @@ const epsilon = 0x1p-52
 // sweepsPerEigenvalue limits the QL iteration; two are usual.
 const sweepsPerEigenvalue = 50
 
-// eigenvaluesOf replaces the diagonal d of a real symmetric tridiagonal matrix
-// with the off-diagonal e by its ascending eigenvalues and destroys e.
-func eigenvaluesOf(d, e []float64) error {
-	if len(d) == 0 {
-		return nil
-	}
-	if !(gonum.Implementation{}).Dsterf(len(d), d, e) {
-		return fmt.Errorf("dense: eigenvalues of a tridiagonal matrix of dimension %d: %w", len(d), ErrIteration)
-	}
-	return nil
-}
-
-// eigenvectorsOf replaces d as eigenvaluesOf does, in the order in which the
-// eigenvalues appear (not sorted), and multiplies z, an n×n matrix in rows, by the
-// eigenvectors from the right: column j of z then belongs to d[j].
+// diagonalise replaces the diagonal d of a real symmetric tridiagonal matrix with
+// the off-diagonal e by its eigenvalues, in no order, and destroys e. With z not nil,
+// an n×n matrix in rows, it multiplies z from the right by the eigenvectors: column
+// j of z then belongs to d[j].
 //
 // It is the implicit QL method. The rotations of many sweeps are gathered and then
 // applied to one group of rows after another while these rows are in cache.
-func eigenvectorsOf(d, e, z []float64) error {
+func diagonalise(d, e, z []float64) error {
 	n := len(d)
-	pending := &rotations{limit: 24 * n}
+	pending := &rotations{limit: 24 * n, wanted: z != nil}
 	size := 0.0
 	for i := range d {
 		size = max(size, math.Abs(d[i]))
@@ -47,7 +34,7 @@ func eigenvectorsOf(d, e, z []float64) error {
 				break
 			}
 			if sweep == sweepsPerEigenvalue {
-				return fmt.Errorf("dense: eigenvectors of a tridiagonal matrix of dimension %d: %w", n, ErrIteration)
+				return fmt.Errorf("dense: eigenvalues of a tridiagonal matrix of dimension %d: %w", n, ErrIteration)
 			}
 			pending.sweep(d, e, first, last)
 			if pending.full() {
@@ -72,6 +59,7 @@ func blockEnd(d, e []float64, first int, size float64) int {
 // rotations are plane rotations that wait to be applied to columns.
 type rotations struct {
 	limit  int
+	wanted bool // false: none are gathered
 	cos    []float64
 	sin    []float64
 	chains []chain
@@ -107,10 +95,14 @@ func (r *rotations) sweep(d, e []float64, first, last int) {
 		p = s * h
 		d[i+1] = g + p
 		g = c*h - b
-		r.cos = append(r.cos, c)
-		r.sin = append(r.sin, s)
+		if r.wanted {
+			r.cos = append(r.cos, c)
+			r.sin = append(r.sin, s)
+		}
 	}
-	r.chains = append(r.chains, chain{last - 1, from, len(r.cos)})
+	if len(r.cos) > from {
+		r.chains = append(r.chains, chain{last - 1, from, len(r.cos)})
+	}
 	if i >= first {
 		return
 	}
@@ -120,6 +112,9 @@ func (r *rotations) sweep(d, e []float64, first, last int) {
 
 // apply multiplies the waiting rotations into the rows of z and forgets them.
 func (r *rotations) apply(z []float64, n int) {
+	if len(r.chains) == 0 {
+		return
+	}
 	share((n+3)/4, 8, func(from, to int) {
 		for group := from; group < to; group++ {
 			row := 4 * group
