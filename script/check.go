@@ -1,0 +1,105 @@
+package script
+
+import (
+	"errors"
+	"go/token"
+	"go/types"
+	"io"
+	"sort"
+	"strings"
+
+	"ketloom/script/lower"
+	"ketloom/script/machine"
+	"ketloom/script/symbols"
+	"ketloom/script/universe"
+)
+
+// Check reads a script and reports everything that would keep it from running,
+// as Problems: syntax, types, unused variables and imports in the compiler's
+// words, and constructs that are not available. It runs nothing.
+func Check(o Options) error {
+	run := machine.New(machine.Streams{In: strings.NewReader(""), Out: io.Discard, Err: io.Discard}, []string{o.Path})
+	defer run.Close()
+	_, _, err := prepare(o, run)
+	return err
+}
+
+// prepare checks and lowers a script for a run.
+func prepare(o Options, run *machine.Run) (*source, *lower.Program, error) {
+	src, problems, err := read(o)
+	if err != nil {
+		return nil, nil, err
+	}
+	if len(problems) > 0 {
+		return src, nil, problems
+	}
+	u := universe.New(symbols.Table)
+	info := universe.NewInfo()
+	pkg, problems := src.check(u, info)
+	if len(problems) > 0 {
+		return src, nil, problems
+	}
+	p, refused := lower.Compile(lower.Input{Fset: src.fset, Files: src.files, Info: info, Package: pkg, Universe: u, Run: run})
+	for _, r := range refused {
+		problems = append(problems, src.at(r.Pos, "%s", r.Message))
+	}
+	if len(problems) > 0 {
+		return src, nil, problems
+	}
+	return src, p, nil
+}
+
+// check type-checks the script and collects all errors.
+func (s *source) check(u *universe.Universe, info *types.Info) (*types.Package, Problems) {
+	var problems Problems
+	conf := types.Config{
+		Importer:  u,
+		GoVersion: "go1.26",
+		Sizes:     types.SizesFor("gc", "amd64"),
+		Error: func(err error) {
+			var e types.Error
+			if errors.As(err, &e) {
+				problems = append(problems, s.typeError(e))
+			}
+		},
+	}
+	pkg, err := conf.Check("main", s.fset, s.files, info)
+	if err != nil && len(problems) == 0 {
+		problems = append(problems, Problem{File: s.name, Message: err.Error()})
+	}
+	for _, f := range s.files {
+		if f.Name.Name != "main" {
+			problems = append(problems, s.at(f.Name.Pos(), "package %s is not a main package; a script is a package main", f.Name.Name))
+		}
+	}
+	if len(problems) == 0 && pkg.Scope().Lookup("main") == nil {
+		problems = append(problems, Problem{File: s.name, Message: "function main is undeclared in the main package"})
+	}
+	sort.SliceStable(problems, func(i, j int) bool {
+		a, b := problems[i], problems[j]
+		if a.File != b.File {
+			return a.File < b.File
+		}
+		if a.Line != b.Line {
+			return a.Line < b.Line
+		}
+		return a.Column < b.Column
+	})
+	return pkg, problems
+}
+
+// typeError words an error of the checker. A continuation of the error before
+// starts with a tab.
+func (s *source) typeError(e types.Error) Problem {
+	msg := e.Msg
+	if strings.HasPrefix(msg, "could not import ") {
+		if i := strings.Index(msg, "("); i >= 0 {
+			msg = strings.TrimSuffix(msg[i+1:], ")")
+		}
+	}
+	pos := e.Pos
+	if !pos.IsValid() {
+		pos = token.NoPos
+	}
+	return s.at(pos, "%s", msg)
+}

@@ -1,0 +1,166 @@
+package machine
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"reflect"
+	"strings"
+)
+
+// prepare shows a script's values to fmt without the interfaces they stand
+// behind; errors stay errors.
+func prepare(args []any) []any {
+	out := make([]any, len(args))
+	for i, a := range args {
+		if f, ok := a.(Failure); ok {
+			out[i] = f
+			continue
+		}
+		out[i] = Plain(a)
+		if v, ok := out[i].(Value); ok {
+			if _, ok := v.T.Method("Error"); ok {
+				out[i] = Failure{v}
+			}
+		}
+	}
+	return out
+}
+
+// verbs replaces %T and %p of a script's values, which fmt handles before it
+// asks a value to print itself.
+func verbs(format string, args []any) (string, []any) {
+	args = prepare(args)
+	var out strings.Builder
+	n := 0
+	for i := 0; i < len(format); i++ {
+		out.WriteByte(format[i])
+		if format[i] != '%' {
+			continue
+		}
+		for i++; i < len(format) && strings.IndexByte("+-# 0123456789.*[]", format[i]) >= 0; i++ {
+			switch format[i] {
+			case '*':
+				n++
+			case '[':
+				k := 0
+				if _, err := fmt.Sscanf(format[i:], "[%d]", &k); err == nil {
+					n = k - 1
+				}
+			}
+			out.WriteByte(format[i])
+		}
+		if i >= len(format) {
+			break
+		}
+		if format[i] == '%' {
+			out.WriteByte('%')
+			continue
+		}
+		verb := format[i]
+		if n >= 0 && n < len(args) {
+			verb = replaceVerb(verb, args, n)
+		}
+		out.WriteByte(verb)
+		n++
+	}
+	return out.String(), args
+}
+
+func replaceVerb(verb byte, args []any, n int) byte {
+	v, ok := Plain(args[n]).(Value)
+	if !ok {
+		return verb
+	}
+	switch verb {
+	case 'T':
+		args[n] = typeName(v.T.Checked)
+		return 's'
+	case 'p':
+		args[n] = v.V
+	}
+	return verb
+}
+
+// line is fmt.Sprint: a space between two operands if neither is a string.
+func line(args []any) string {
+	args = prepare(args)
+	var b bytes.Buffer
+	last := false
+	for i, a := range args {
+		text := isText(a)
+		if i > 0 && !text && !last {
+			b.WriteByte(' ')
+		}
+		fmt.Fprint(&b, a)
+		last = text
+	}
+	return b.String()
+}
+
+func isText(a any) bool {
+	if v, ok := Plain(a).(Value); ok {
+		return v.reflected().Kind() == reflect.String
+	}
+	return a != nil && reflect.TypeOf(a).Kind() == reflect.String
+}
+
+func sprintf(format string, args ...any) string {
+	f, a := verbs(format, args)
+	return fmt.Sprintf(f, a...)
+}
+
+func sprintln(args ...any) string { return fmt.Sprintln(prepare(args)...) }
+
+func (r *Run) printing() map[string]any {
+	write := func(w io.Writer, s string) (int, error) { return io.WriteString(w, s) }
+	return map[string]any{
+		"fmt.Sprint":   func(a ...any) string { return line(a) },
+		"fmt.Sprintln": sprintln,
+		"fmt.Sprintf":  sprintf,
+		"fmt.Print":    func(a ...any) (int, error) { return write(r.Out(), line(a)) },
+		"fmt.Println":  func(a ...any) (int, error) { return write(r.Out(), sprintln(a...)) },
+		"fmt.Printf":   func(f string, a ...any) (int, error) { return write(r.Out(), sprintf(f, a...)) },
+		"fmt.Fprint":   func(w io.Writer, a ...any) (int, error) { return bytesTo(w, line(a)) },
+		"fmt.Fprintln": func(w io.Writer, a ...any) (int, error) { return bytesTo(w, sprintln(a...)) },
+		"fmt.Fprintf":  func(w io.Writer, f string, a ...any) (int, error) { return bytesTo(w, sprintf(f, a...)) },
+		"fmt.Append":   func(b []byte, a ...any) []byte { return append(b, line(a)...) },
+		"fmt.Appendln": func(b []byte, a ...any) []byte { return append(b, sprintln(a...)...) },
+		"fmt.Appendf":  func(b []byte, f string, a ...any) []byte { return append(b, sprintf(f, a...)...) },
+		"fmt.Errorf": func(f string, a ...any) error {
+			f, args := verbs(f, a)
+			return fmt.Errorf(f, args...)
+		},
+		"fmt.Scan":    func(a ...any) (int, error) { return fmt.Fscan(r.reader(), stored(a)...) },
+		"fmt.Scanln":  func(a ...any) (int, error) { return fmt.Fscanln(r.reader(), stored(a)...) },
+		"fmt.Scanf":   func(f string, a ...any) (int, error) { return fmt.Fscanf(r.reader(), f, stored(a)...) },
+		"fmt.Sscan":   func(s string, a ...any) (int, error) { return fmt.Sscan(s, stored(a)...) },
+		"fmt.Sscanln": func(s string, a ...any) (int, error) { return fmt.Sscanln(s, stored(a)...) },
+		"fmt.Sscanf":  func(s, f string, a ...any) (int, error) { return fmt.Sscanf(s, f, stored(a)...) },
+		"fmt.Fscan":   func(rd io.Reader, a ...any) (int, error) { return fmt.Fscan(rd, stored(a)...) },
+		"fmt.Fscanln": func(rd io.Reader, a ...any) (int, error) { return fmt.Fscanln(rd, stored(a)...) },
+		"fmt.Fscanf":  func(rd io.Reader, f string, a ...any) (int, error) { return fmt.Fscanf(rd, f, stored(a)...) },
+	}
+}
+
+// bytesTo writes in one call, as fmt does.
+func bytesTo(w io.Writer, s string) (int, error) { return w.Write([]byte(s)) }
+
+// stored replaces a script's values by their stored form.
+func stored(args []any) []any {
+	out := make([]any, len(args))
+	for i, a := range args {
+		out[i] = Plain(a)
+		if v, ok := out[i].(Value); ok {
+			out[i] = v.V
+		}
+	}
+	return out
+}
+
+func (r *Run) reader() io.Reader {
+	if r.streams.In == nil {
+		return strings.NewReader("")
+	}
+	return r.streams.In
+}
