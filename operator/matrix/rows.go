@@ -29,22 +29,32 @@ type element struct {
 
 // scratch is the working memory of one goroutine.
 type scratch struct {
-	elements []element
+	made   []element // as the kernels make them
+	order  []uint64  // column and place of each, to be sorted
+	merged []element
 }
+
+// placeBits are the bits of an order key that hold the place in the row, the
+// bits above hold the column.
+const placeBits = 24
 
 // row returns the elements of row i in ascending column order, each column
 // once, with the diagonal apart where both bases are the same. The slice is
 // valid until the next call with the same scratch.
 func (r *rows) row(i int, s *scratch) (elements []element, diagonal complex128) {
 	c := uint64(r.to.At(i))
-	s.elements = s.elements[:0]
+	s.made = s.made[:0]
 	var here complex128
 	for k := range r.diagonal {
 		if d := &r.diagonal[k]; c&d.mask == d.value {
 			here += d.amplitude(c)
 		}
 	}
-	if here != 0 {
+	switch {
+	case here == 0:
+	case r.to == r.from:
+		s.made = append(s.made, element{i, complex(real(here), -imag(here))})
+	default:
 		r.add(s, i, c, here)
 	}
 	for k := range r.moving {
@@ -52,15 +62,15 @@ func (r *rows) row(i int, s *scratch) (elements []element, diagonal complex128) 
 			r.add(s, i, c^m.flip, m.amplitude(c))
 		}
 	}
-	elements = merge(s.elements)
+	s.merge()
 	if r.to != r.from {
-		return elements, 0
+		return s.merged, 0
 	}
-	if at, ok := slices.BinarySearchFunc(elements, i, func(e element, i int) int { return e.column - i }); ok {
-		diagonal = elements[at].value
-		elements = slices.Delete(elements, at, at+1)
+	if at, ok := slices.BinarySearchFunc(s.merged, i, func(e element, i int) int { return e.column - i }); ok {
+		diagonal = s.merged[at].value
+		s.merged = slices.Delete(s.merged, at, at+1)
 	}
-	return elements, diagonal
+	return s.merged, diagonal
 }
 
 // add puts the amplitude of O† on c into the row.
@@ -77,20 +87,25 @@ func (r *rows) add(s *scratch, i int, c uint64, amplitude complex128) {
 	case a != b:
 		value *= complex(math.Sqrt(float64(a)/float64(b)), 0)
 	}
-	s.elements = append(s.elements, element{j, complex(real(value), -imag(value))})
+	s.made = append(s.made, element{j, complex(real(value), -imag(value))})
 }
 
 // merge sorts the elements by column and adds up those of the same column, in
-// the order in which they were made.
-func merge(list []element) []element {
-	slices.SortStableFunc(list, func(a, b element) int { return a.column - b.column })
-	out := list[:0]
-	for _, e := range list {
-		if n := len(out); n > 0 && out[n-1].column == e.column {
-			out[n-1].value += e.value
+// the order in which they were made. Zeros are dropped.
+func (s *scratch) merge() {
+	s.order = s.order[:0]
+	for place, e := range s.made {
+		s.order = append(s.order, uint64(e.column)<<placeBits|uint64(place))
+	}
+	slices.Sort(s.order)
+	s.merged = s.merged[:0]
+	for _, key := range s.order {
+		e := s.made[key&(1<<placeBits-1)]
+		if n := len(s.merged); n > 0 && s.merged[n-1].column == e.column {
+			s.merged[n-1].value += e.value
 			continue
 		}
-		out = append(out, e)
+		s.merged = append(s.merged, e)
 	}
-	return slices.DeleteFunc(out, func(e element) bool { return e.value == 0 })
+	s.merged = slices.DeleteFunc(s.merged, func(e element) bool { return e.value == 0 })
 }
