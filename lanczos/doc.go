@@ -26,8 +26,6 @@
 //
 // Only the lower end of the spectrum is offered. The highest levels are those of -H.
 //
-// An operator whose entries lie outside 1e-140 to 1e140 should be scaled first.
-//
 // # Reproducibility
 //
 // Start vectors come from Options.Seed, which the result repeats. All sums add

@@ -13,8 +13,8 @@ type Level struct {
 	// floor RoundingFloor·‖H‖. The first is Residual, for the list as a whole the
 	// norm of all residuals together. The second is quadratic: ‖R‖²/(b - Energy), R
 	// all residuals of the list, b a lower bound of the rest of the spectrum. That b
-	// is Check.Next, an estimate: so the second is as good as the check, and it is
-	// not used where no check ended.
+	// is Check.Next, so the second bound holds as far as the check does; it is not used
+	// where no check ended.
 	//
 	// T. Kato, J. Phys. Soc. Jpn. 4, 334 (1949) and G. Temple, Proc. R. Soc. A 119,
 	// 276 (1928) for one level; C.-K. Li and R.-C. Li, Linear Algebra Appl. 395, 183
@@ -35,17 +35,18 @@ type Level struct {
 type Check struct {
 	// Done is true where a check ran to its end.
 	Done bool
-	// Below is the energy up to which a missed level would have been noticed. It is
-	// the k-th level, plus the resolution, unless CutMultiplet or a level very close
-	// above forbids to look there; it then lies below the multiplet of the k-th level,
-	// and between Below and that multiplet only the convergence of the lowest Ritz
-	// value of the complement speaks.
+	// Below is the energy up to which a missed level would have been noticed. It lies
+	// above the k-th level, by an amount of the order of the gap. Where level k+1 equals
+	// the k-th (CutMultiplet), or is too close for that, Below lies below the multiplet
+	// of the k-th level, and between the two only the convergence of the complement's
+	// lowest Ritz value speaks.
 	Below float64
 	// Chance bounds the probability that a level up to Below was missed all the same.
 	Chance float64
-	// Next estimates a lower bound of the first level above the list: the lowest Ritz
-	// value of the complement minus its residual norm. HasNext is false where none is
-	// known, as when the list holds all levels.
+	// Next is a lower bound of the first level above the list. It is Below, with the
+	// same Chance, where Below is above the k-th level; else it is an estimate, the
+	// complement's lowest Ritz value minus its residual norm. A converged level that was
+	// pushed out of the list lowers it. HasNext is false where no level follows.
 	Next    float64
 	HasNext bool
 	// Runs and Products count all runs in complements and their products.

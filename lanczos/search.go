@@ -156,7 +156,7 @@ func (s *search[T]) run(judge func(exhausted bool) (take int, done bool)) error 
 	s.reserve()
 	m := s.matrix
 	m.reset()
-	interval := 4
+	interval := 4 // products between two looks at the Ritz values
 	if s.dim > 20000 {
 		interval = 2
 	}
@@ -170,7 +170,7 @@ func (s *search[T]) run(judge func(exhausted bool) (take int, done bool)) error 
 		if !exhausted && s.watch != nil {
 			s.watch.step(m)
 		}
-		if !exhausted && !full && !limit && m.size-judged < interval {
+		if !exhausted && !full && !limit && m.size-judged < max(interval, m.size/10) {
 			continue
 		}
 		judged = m.size

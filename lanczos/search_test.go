@@ -11,8 +11,7 @@ import (
 	"testing"
 )
 
-// chain returns a large sparse real operator with a plain product: hopping on an
-// open chain in a linear potential that is stronger at the ends.
+// chain returns hopping on an open chain in a smooth potential: slow to converge.
 func chain(n int) Operator {
 	return RealFunc(n, func(dst, src []float64) {
 		for i := range dst {
@@ -28,7 +27,7 @@ func chain(n int) Operator {
 	})
 }
 
-// random returns an operator with a scrambled random diagonal, quick to converge.
+// scrambled returns a full matrix with a few low levels, quick to converge.
 func scrambled(n int, isComplex bool) Operator {
 	levels := bulk(n, -4, -3.5, -3.5, -3, -2.2, -2, -1.5)
 	return prescribed(levels, 10, isComplex)

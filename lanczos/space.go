@@ -97,20 +97,28 @@ func (s *space[T]) block(b, worker int) {
 	}
 }
 
+// rotateStep is the number of components that are rotated at once: those of all
+// vectors then fit in the nearest cache.
+const rotateStep = 512
+
 // rotateBlock forms all new vectors in scratch before it writes, since into may be
 // the beginning of set.
 func (s *space[T]) rotateBlock(from, to, worker int) {
-	size := to - from
-	scratch := s.scratch[worker][:len(s.into)*size]
-	clear(scratch)
-	for c := range s.into {
-		x := scratch[c*size : (c+1)*size]
-		for r, v := range s.set {
-			s.f.add(s.setC[r*len(s.into)+c], v[from:to], x)
+	count := len(s.into)
+	for ; from < to; from += rotateStep {
+		end := min(from+rotateStep, to)
+		size := end - from
+		scratch := s.scratch[worker][:count*size]
+		clear(scratch)
+		for c := range count {
+			x := scratch[c*size : (c+1)*size]
+			for r, v := range s.set {
+				s.f.add(s.setC[r*count+c], v[from:end], x)
+			}
 		}
-	}
-	for c, v := range s.into {
-		copy(v[from:to], scratch[c*size:(c+1)*size])
+		for c, v := range s.into {
+			copy(v[from:end], scratch[c*size:(c+1)*size])
+		}
 	}
 }
 
@@ -190,7 +198,7 @@ func (s *space[T]) rotate(into, set [][]T, u []T) {
 		return
 	}
 	s.set, s.into, s.setC = set, into, u
-	if need := len(into) * blockSize; len(s.scratch[0]) < need {
+	if need := len(into) * rotateStep; len(s.scratch[0]) < need {
 		for i := range s.scratch {
 			s.scratch[i] = make([]T, need)
 		}
