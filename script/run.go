@@ -60,6 +60,7 @@ func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Progra
 	}
 	inner, stop := context.WithCancel(context.Background())
 	defer stop()
+	go watch(run, inner.Done())
 	failed := make(chan error, 1)
 	go func() {
 		_, err := i.ExecuteWithContext(inner, prog)

@@ -5,6 +5,7 @@ import (
 	"go/constant"
 	"go/token"
 	"go/types"
+	"reflect"
 )
 
 // typedValue is a computed value and its type.
@@ -220,9 +221,12 @@ func (f *fn) several(e ast.Expr) []typedValue {
 func (f *fn) entry(e *ast.IndexExpr) ([]string, []types.Type) {
 	u := f.typeOf(e.X).Underlying().(*types.Map)
 	p := f.mapPlace(e, u)()
-	v := f.c.fresh("t")
+	v, ok := f.c.fresh("t"), f.temp("bool")
+	if f.form(p.typ).Kind() == reflect.Func {
+		f.line("_, %s = %s", ok, p.s)
+		return []string{f.current(p), ok}, []types.Type{p.typ, types.Typ[types.Bool]}
+	}
 	f.line("var %s %s", v, f.text(p.typ))
-	ok := f.temp("bool")
 	f.line("%s, %s = %s", v, ok, p.s)
 	return []string{v, ok}, []types.Type{p.typ, types.Typ[types.Bool]}
 }
@@ -251,12 +255,31 @@ func (f *fn) opAssign(lhs ast.Expr, op token.Token, rhs ast.Expr, pos token.Pos)
 
 // current reads a place whose parts have been computed.
 func (f *fn) current(p place) string {
-	if p.set != nil && p.s != "" && !isAtom(p.s) {
-		t := f.temp(f.text(p.typ))
+	if p.m == "" {
+		return f.read(p)
+	}
+	t := f.temp(f.text(p.typ))
+	if f.form(p.typ).Kind() != reflect.Func {
 		f.line("%s = %s", t, p.s)
 		return t
 	}
-	return f.read(p)
+	f.line("%s = %s(%s, %s)", t, f.c.entryFunc(p, f), p.m, p.k)
+	return t
+}
+
+// entryFunc reads entries of maps of functions, which the interpreter cannot.
+func (c *compiler) entryFunc(p place, f *fn) string {
+	m := f.form(p.typ)
+	key := f.form(p.key)
+	form := reflect.MapOf(key, m)
+	return c.once("entry "+c.text(form), func() string {
+		return c.symbol("G", reflect.MakeFunc(reflect.FuncOf([]reflect.Type{form, key}, []reflect.Type{m}, false), func(in []reflect.Value) []reflect.Value {
+			if v := in[0].MapIndex(in[1]); v.IsValid() {
+				return []reflect.Value{v}
+			}
+			return []reflect.Value{reflect.Zero(m)}
+		}))
+	})
 }
 
 func (f *fn) incDec(s *ast.IncDecStmt) {

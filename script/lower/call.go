@@ -263,12 +263,12 @@ func (f *fn) genericFunc(e ast.Expr) (*ast.Ident, *types.Func) {
 // callMethod calls a method of a script's type, of a compiled one, or of what
 // an interface holds.
 func (f *fn) callMethod(e *ast.CallExpr, fun *ast.SelectorExpr, sel *types.Selection) *prepared {
-	method := sel.Obj().(*types.Func)
 	recv := f.typ(sel.Recv())
+	method, path := f.method(sel, recv)
 	if isInterface(recv) {
 		return f.callDynamic(e, fun.X, recv, method)
 	}
-	base := f.receiver(fun.X, sel)
+	base := f.receiver(fun.X, method, path)
 	if base.dynamic {
 		return f.callDynamicOn(e, base.value, base.typ, method)
 	}
@@ -292,11 +292,22 @@ type receiver struct {
 	dynamic bool       // an interface, reached through an embedded field
 }
 
+// method returns the method that a selection finds and the embedded fields on
+// the way to it. In a generic function the method of a constraint stands for
+// that of the type argument recv.
+func (f *fn) method(sel *types.Selection, recv types.Type) (*types.Func, []int) {
+	method, path := sel.Obj().(*types.Func), sel.Index()
+	if r := method.Signature().Recv(); r != nil && isInterface(r.Type()) && !isInterface(recv) && len(path) == 1 {
+		obj, index, _ := types.LookupFieldOrMethod(recv, true, method.Pkg(), method.Name())
+		if m, ok := obj.(*types.Func); ok {
+			method, path = m, index
+		}
+	}
+	return method, path[:len(path)-1]
+}
+
 // receiver goes along embedded fields and takes or follows an address.
-func (f *fn) receiver(x ast.Expr, sel *types.Selection) receiver {
-	path := sel.Index()
-	path = path[:len(path)-1]
-	method := sel.Obj().(*types.Func)
+func (f *fn) receiver(x ast.Expr, method *types.Func, path []int) receiver {
 	base := f.orderPlace(x)
 	_, wantPointer := method.Signature().Recv().Type().Underlying().(*types.Pointer)
 	start := f.typeOf(x)

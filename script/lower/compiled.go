@@ -1,6 +1,7 @@
 package lower
 
 import (
+	"fmt"
 	"go/ast"
 	"go/token"
 	"go/types"
@@ -86,7 +87,7 @@ func (f *fn) site(e *ast.CallExpr, sig *types.Signature, recv *receiver, target 
 	for i, a := range args {
 		want := paramType(tt, i+offset, spread)
 		in = append(in, f.form(a.typ))
-		convert = append(convert, f.converter(a.typ, want))
+		convert = append(convert, f.shown(e, a.typ, want, f.converter(a.typ, want)))
 	}
 	results := f.tuple(sig.Results())
 	var out []reflect.Type
@@ -94,6 +95,7 @@ func (f *fn) site(e *ast.CallExpr, sig *types.Signature, recv *receiver, target 
 		out = append(out, f.form(t))
 	}
 	pos := e.Pos()
+	track := f.c.tracked(tt)
 	typ := reflect.FuncOf(in, out, false)
 	fun := reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
 		defer machine.Mark(pos)
@@ -109,6 +111,9 @@ func (f *fn) site(e *ast.CallExpr, sig *types.Signature, recv *receiver, target 
 		for i := range res {
 			res[i] = fitted(res[i], out[i])
 		}
+		for _, i := range track {
+			f.c.in.Run.Track(res[i].Interface())
+		}
 		return res
 	})
 	p := &prepared{f: f, text: f.c.symbol("S", fun), results: results, direct: true}
@@ -122,6 +127,66 @@ func (f *fn) site(e *ast.CallExpr, sig *types.Signature, recv *receiver, target 
 		p.forms = append(p.forms, form)
 	}
 	return p
+}
+
+// keepers are packages whose functions take values as any and either know a
+// script's values or only keep them.
+var keepers = map[string]bool{
+	"fmt": true, "log": true, "errors": true, "sort": true, "container/heap": true, "container/list": true, "context": true,
+	"sync": true, "sync/atomic": true, "encoding/json": true,
+}
+
+// shown guards an argument that compiled code gets as any: code that looks at
+// its type or methods would not find those of the script.
+func (f *fn) shown(e *ast.CallExpr, from types.Type, to reflect.Type, convert func(reflect.Value) reflect.Value) func(reflect.Value) reflect.Value {
+	path, name := f.callee(e)
+	if path == "encoding/json" && to == anyType {
+		f.checkJSON(e, from)
+	}
+	if to != anyType || keepers[path] {
+		return convert
+	}
+	if !isInterface(from) {
+		if f.c.mentions(from) {
+			f.refuse(e, "passing a value of the script's type %s to %s is not available; convert it to a compiled or predeclared type", types.TypeString(from, types.RelativeTo(f.c.in.Package)), name)
+		}
+		return convert
+	}
+	pos := e.Pos()
+	return func(v reflect.Value) reflect.Value {
+		if !v.IsNil() {
+			if x, ok := machine.Plain(v.Interface()).(machine.Value); ok {
+				machine.Throw(pos, fmt.Sprintf("passing a value of the script's type %s to %s is not available; convert it to a compiled or predeclared type", x.T, name))
+			}
+		}
+		return convert(v)
+	}
+}
+
+// callee returns package path and name of a called compiled function or method.
+func (f *fn) callee(e *ast.CallExpr) (string, string) {
+	var id *ast.Ident
+	switch fun := ast.Unparen(e.Fun).(type) {
+	case *ast.Ident:
+		id = fun
+	case *ast.SelectorExpr:
+		id = fun.Sel
+	}
+	if obj, ok := f.info.Uses[id].(*types.Func); ok && obj.Pkg() != nil {
+		return obj.Pkg().Path(), obj.FullName()
+	}
+	return "", "compiled code"
+}
+
+// tracked returns the results of a compiled function that can be discarded.
+func (c *compiler) tracked(t reflect.Type) []int {
+	var list []int
+	for i := range t.NumOut() {
+		if _, ok := t.Out(i).MethodByName("Discard"); ok && t.Out(i).Kind() == reflect.Pointer {
+			list = append(list, i)
+		}
+	}
+	return list
 }
 
 func paramType(t reflect.Type, i int, spread bool) reflect.Type {

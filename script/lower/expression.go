@@ -140,6 +140,9 @@ func (f *fn) ident(e *ast.Ident) late {
 		if l := f.compiledVariable(obj); l != nil {
 			return l
 		}
+		if len(f.c.refusals) > 0 {
+			panic(stop{}) // its declaration was refused
+		}
 	case *types.Func:
 		return f.funcValue(obj, e)
 	}

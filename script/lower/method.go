@@ -13,13 +13,13 @@ import (
 
 // methodValue binds a method to the present value of its receiver.
 func (f *fn) methodValue(e *ast.SelectorExpr, sel *types.Selection) late {
-	method := sel.Obj().(*types.Func)
 	recv := f.typ(sel.Recv())
+	method, path := f.method(sel, recv)
 	var base receiver
 	if isInterface(recv) {
 		base = receiver{value: f.order(e.X), typ: recv, form: f.text(recv), dynamic: true}
 	} else {
-		base = f.receiver(e.X, sel)
+		base = f.receiver(e.X, method, path)
 	}
 	return func() string {
 		r := f.atomOf(base.value(), base.form)
@@ -95,8 +95,8 @@ func compiledMethod(m reflect.Value, recv, form reflect.Type, pos token.Pos) ref
 
 // methodExpr is a method as a function of its receiver.
 func (f *fn) methodExpr(e *ast.SelectorExpr, sel *types.Selection) late {
-	method := sel.Obj().(*types.Func)
 	recv := f.typ(sel.Recv())
+	method, _ := f.method(sel, recv)
 	sig := f.typeOf(e).(*types.Signature)
 	return func() string {
 		form := f.text(sig)

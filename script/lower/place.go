@@ -11,8 +11,10 @@ type place struct {
 	s      string
 	folded types.Type
 	// set replaces assignment, for map entries and compiled variables.
-	set func(value string)
-	typ types.Type
+	set  func(value string)
+	m, k string // map and key of an entry
+	key  types.Type
+	typ  types.Type
 }
 
 // orderPlace makes the calls in e and returns what yields its place.
@@ -240,7 +242,7 @@ func (f *fn) mapPlace(e *ast.IndexExpr, u *types.Map) func() place {
 		s := f.atomOf(m(), f.text(f.typeOf(e.X)))
 		k := f.atomOf(key(), f.text(f.typ(u.Key())))
 		et := f.typ(u.Elem())
-		p := place{typ: et}
+		p := place{typ: et, m: s, k: k, key: f.typ(u.Key())}
 		p.s = s + "[" + k + "]"
 		p.set = func(value string) {
 			v := f.atomOf(value, f.text(et))
@@ -257,10 +259,7 @@ func (f *fn) index(e *ast.IndexExpr) late {
 		return f.instanceValue(e, e.X)
 	}
 	if u, ok := f.typeOf(e.X).Underlying().(*types.Map); ok {
-		p := f.mapPlace(e, u)()
-		t := f.temp(f.text(p.typ))
-		f.line("%s = %s", t, p.s)
-		return ready(t)
+		return ready(f.current(f.mapPlace(e, u)()))
 	}
 	return f.readPlace(e)
 }

@@ -16,7 +16,7 @@ func (f *fn) rangeStmt(s *ast.RangeStmt) {
 	t := f.typeOf(s.X)
 	if isUntyped(t) {
 		t = types.Default(t)
-		if s.Key != nil {
+		if b := t.(*types.Basic); s.Key != nil && b.Info()&types.IsString == 0 {
 			t = f.storeType(s.Key)
 		}
 	}

@@ -24,6 +24,7 @@ type Run struct {
 	mutex   sync.Mutex
 	types   []*Type
 	pipes   []*pipe
+	open    []discarder
 	process *process
 	// Compiled tells objects of compiled packages from those of the script.
 	Compiled func(types.Object) bool
@@ -84,10 +85,11 @@ func (r *Run) Exit(code int) {
 // Stop makes waiting operations unwind.
 func (r *Run) Stop() { r.stop.Do(func() { close(r.done) }) }
 
-// Close stops the run and waits until everything written has reached the
-// streams.
+// Close stops the run, discards what the script left open, and waits until
+// everything written has reached the streams.
 func (r *Run) Close() {
 	r.Stop()
+	r.discard()
 	r.mutex.Lock()
 	defer r.mutex.Unlock()
 	for _, p := range r.pipes {
