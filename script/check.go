@@ -2,7 +2,7 @@ package script
 
 import (
 	"errors"
-	"go/token"
+	"fmt"
 	"go/types"
 	"io"
 	"sort"
@@ -58,9 +58,16 @@ func (s *source) check(u *universe.Universe, info *types.Info) (*types.Package, 
 		Sizes:     types.SizesFor("gc", "amd64"),
 		Error: func(err error) {
 			var e types.Error
-			if errors.As(err, &e) {
-				problems = append(problems, s.typeError(e))
+			if !errors.As(err, &e) {
+				return
 			}
+			p := s.typeError(e)
+			if rest, ok := strings.CutPrefix(p.Message, "\t"); ok && len(problems) > 0 { // more about the error before
+				last := &problems[len(problems)-1]
+				last.Message += fmt.Sprintf("\n\t%s:%d:%d: %s", p.File, p.Line, p.Column, rest)
+				return
+			}
+			problems = append(problems, p)
 		},
 	}
 	pkg, err := conf.Check("main", s.fset, s.files, info)
@@ -88,8 +95,7 @@ func (s *source) check(u *universe.Universe, info *types.Info) (*types.Package, 
 	return pkg, problems
 }
 
-// typeError words an error of the checker. A continuation of the error before
-// starts with a tab.
+// typeError words an error of the checker as the compiler does.
 func (s *source) typeError(e types.Error) Problem {
 	msg := e.Msg
 	if strings.HasPrefix(msg, "could not import ") {
@@ -97,9 +103,13 @@ func (s *source) typeError(e types.Error) Problem {
 			msg = strings.TrimSuffix(msg[i+1:], ")")
 		}
 	}
-	pos := e.Pos
-	if !pos.IsValid() {
-		pos = token.NoPos
+	switch {
+	case msg == "break not in for, switch, or select statement":
+		msg = "break is not in a loop, switch, or select"
+	case msg == "continue not in for statement":
+		msg = "continue is not in a loop"
+	case strings.HasPrefix(msg, "label ") && strings.HasSuffix(msg, " declared and not used"):
+		msg = strings.TrimSuffix(msg, " declared and not used") + " defined and not used"
 	}
-	return s.at(pos, "%s", msg)
+	return s.at(e.Pos, "%s", msg)
 }

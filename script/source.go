@@ -92,12 +92,20 @@ func (s *source) parse(path, text string) (Problems, error) {
 	return nil, nil
 }
 
-// syntax words errors of the parser, one for each line.
+// syntax words errors of the parser, one for each line. What is missed at the
+// end of a file follows from an error before.
 func (s *source) syntax(list scanner.ErrorList) Problems {
 	list.RemoveMultiples()
 	var problems Problems
 	for _, e := range list {
-		problems = append(problems, s.problem(e.Pos, "syntax error: "+e.Msg))
+		msg := e.Msg
+		if want, have, ok := strings.Cut(msg, ", found "); ok && strings.HasPrefix(want, "expected ") {
+			if have == "'EOF'" && len(problems) > 0 {
+				continue
+			}
+			msg = "unexpected " + strings.Trim(have, "'") + ", " + strings.ReplaceAll(want, "'", "")
+		}
+		problems = append(problems, s.problem(e.Pos, "syntax error: "+msg))
 	}
 	return problems
 }

@@ -58,7 +58,8 @@ type compiler struct {
 	targets  map[types.Object]bool // labels that a goto names
 	last     func()                // emits setup and main, after everything else
 	texts    map[reflect.Type]string
-	mutex    sync.Mutex // guards the universe while the script runs
+	met      map[string]bool // types whose parts are known at run time
+	mutex    sync.Mutex      // guards the universe while the script runs
 }
 
 // body is the source of a declared function.
@@ -72,7 +73,7 @@ func Compile(in Input) (*Program, []Refusal) {
 	c := &compiler{
 		in: in, symbols: map[string]reflect.Value{}, shared: map[string]string{}, bodies: map[types.Object]body{},
 		names: map[string]string{}, globals: map[types.Object]*variable{}, stored: map[types.Type]reflect.Type{},
-		open: map[*types.TypeName]bool{}, refused: map[Refusal]bool{}, facts: map[types.Object]*fact{}, targets: map[types.Object]bool{}, texts: map[reflect.Type]string{},
+		open: map[*types.TypeName]bool{}, refused: map[Refusal]bool{}, facts: map[types.Object]*fact{}, targets: map[types.Object]bool{}, texts: map[reflect.Type]string{}, met: map[string]bool{},
 	}
 	in.Run.Compiled = in.Universe.Compiled
 	c.support()
@@ -82,7 +83,6 @@ func Compile(in Input) (*Program, []Refusal) {
 	for _, g := range in.Universe.Sources() {
 		c.collect(g.File, g.Info)
 	}
-	c.scriptTypes()
 	c.declareGlobals()
 	c.entry()
 	for len(c.work) > 0 {

@@ -173,8 +173,42 @@ func (c *compiler) runType(t types.Type) *machine.Type {
 	return c.in.Run.Type(t, func(rt *machine.Type) {
 		rt.Stored = c.form(t, 0)
 		c.methodsOf(t, rt)
+		c.inside(t)
 	})
 }
+
+// inside makes the types known on which t is built: printing meets them.
+func (c *compiler) inside(t types.Type) {
+	switch t := types.Unalias(t).(type) {
+	case *types.Named:
+		if c.in.Universe.Compiled(t.Obj()) || isInterface(t) {
+			return
+		}
+		if hasMethods(t) {
+			c.runType(t)
+			c.runType(types.NewPointer(t))
+		}
+		if key := c.typeKey(t); !c.met[key] {
+			c.met[key] = true
+			c.inside(t.Underlying())
+		}
+	case *types.Pointer:
+		c.inside(t.Elem())
+	case *types.Slice:
+		c.inside(t.Elem())
+	case *types.Array:
+		c.inside(t.Elem())
+	case *types.Map:
+		c.inside(t.Key())
+		c.inside(t.Elem())
+	case *types.Struct:
+		for f := range t.Fields() {
+			c.inside(f.Type())
+		}
+	}
+}
+
+func hasMethods(t types.Type) bool { return types.NewMethodSet(types.NewPointer(t)).Len() > 0 }
 
 // methodsOf emits a function for each method of t and enters it in rt.
 func (c *compiler) methodsOf(t types.Type, rt *machine.Type) {
@@ -229,22 +263,3 @@ func (f *fn) recoverStop() {
 		}
 	}
 }
-
-// scriptTypes makes the named types of the script known at run time.
-func (c *compiler) scriptTypes() {
-	scope := c.in.Package.Scope()
-	for _, name := range scope.Names() {
-		tn, ok := scope.Lookup(name).(*types.TypeName)
-		if !ok || tn.IsAlias() {
-			continue
-		}
-		named, ok := tn.Type().(*types.Named)
-		if !ok || named.TypeParams().Len() > 0 || isInterface(named) || named.NumMethods() == 0 && !hasPromoted(named) {
-			continue
-		}
-		c.runType(named)
-		c.runType(types.NewPointer(named))
-	}
-}
-
-func hasPromoted(t types.Type) bool { return types.NewMethodSet(types.NewPointer(t)).Len() > 0 }

@@ -175,6 +175,7 @@ type yield struct {
 	label   string
 	control *variable
 	exits   []*ast.BranchStmt
+	returns bool // some return statement is inside
 }
 
 func (f *fn) rangeFunction(s *ast.RangeStmt, l *loop, t types.Type, u *types.Signature) {
@@ -241,27 +242,36 @@ func (f *fn) yieldReturn(s *ast.ReturnStmt) {
 	if len(s.Results) > 0 {
 		f.setBoxes(f.returnValues(s))
 	}
+	f.yield.returns = true
 	f.line("*%s = 2", f.pointer(f.yield.control))
 	f.line("return false")
 }
 
 // afterYield does in the function around what the body asked for.
 func (f *fn) afterYield(y *yield) {
-	f.line("if %s == 2 {", f.use(y.control))
+	if y.returns {
+		f.line("if %s == 2 {", f.use(y.control))
+		f.returnOutwards()
+		f.line("}")
+	}
+	for i, s := range y.exits {
+		f.line("if %s == %d {", f.use(y.control), 3+i)
+		f.leave(s)
+		f.line("}")
+	}
+}
+
+// returnOutwards returns what a body inside has left in the result variables.
+func (f *fn) returnOutwards() {
 	switch {
 	case f.yield != nil:
+		f.yield.returns = true
 		f.line("*%s = 2", f.pointer(f.yield.control))
 		f.line("return false")
 	case f.inner:
 		f.line("return")
 	default:
 		f.returnBoxes()
-	}
-	f.line("}")
-	for i, s := range y.exits {
-		f.line("if %s == %d {", f.use(y.control), 3+i)
-		f.leave(s)
-		f.line("}")
 	}
 }
 

@@ -50,8 +50,19 @@ func (p *printer) print(t types.Type, v reflect.Value, depth int, methods bool) 
 	case *types.Interface:
 		p.inner(t, v, depth, methods)
 	default:
-		p.native(v, depth, methods)
+		p.basic(t, v)
 	}
+}
+
+// basic prints a number, truth value or string of a script's type; a verb that
+// does not fit is answered with the name of the type.
+func (p *printer) basic(t types.Type, v reflect.Value) {
+	s := fmt.Sprintf(fmt.FormatString(p.state, p.verb), v.Interface())
+	bad := fmt.Sprintf("%%!%c(%s=", p.verb, v.Type())
+	if rest, ok := strings.CutPrefix(s, bad); ok {
+		s = fmt.Sprintf("%%!%c(%s=%s", p.verb, typeName(t), rest)
+	}
+	p.text(s)
 }
 
 // native leaves the printing to fmt.
@@ -262,5 +273,24 @@ func typeName(t types.Type) string {
 	if s == "any" {
 		return "interface {}"
 	}
-	return strings.ReplaceAll(strings.ReplaceAll(s, "]any", "]interface {}"), "interface{}", "interface {}")
+	s = strings.ReplaceAll(strings.ReplaceAll(s, "]any", "]interface {}"), "interface{}", "interface {}")
+	if !strings.Contains(s, ", ") {
+		return s
+	}
+	var out strings.Builder
+	var open []byte
+	for i := range len(s) {
+		switch s[i] {
+		case '[', '(', '{':
+			open = append(open, s[i])
+		case ']', ')', '}':
+			open = open[:len(open)-1]
+		case ' ': // type arguments stand without spaces
+			if s[i-1] == ',' && len(open) > 0 && open[len(open)-1] == '[' {
+				continue
+			}
+		}
+		out.WriteByte(s[i])
+	}
+	return out.String()
 }

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"reflect"
+	"strconv"
 	"strings"
 )
 
@@ -30,56 +31,88 @@ func prepare(args []any) []any {
 // verbs replaces %T and %p of a script's values, which fmt handles before it
 // asks a value to print itself.
 func verbs(format string, args []any) (string, []any) {
-	args = prepare(args)
-	var out strings.Builder
-	n := 0
+	d := directives{args: prepare(args), explicit: strings.Contains(format, "[")}
 	for i := 0; i < len(format); i++ {
-		out.WriteByte(format[i])
-		if format[i] != '%' {
-			continue
-		}
-		for i++; i < len(format) && strings.IndexByte("+-# 0123456789.*[]", format[i]) >= 0; i++ {
-			switch format[i] {
-			case '*':
-				n++
-			case '[':
-				k := 0
-				if _, err := fmt.Sscanf(format[i:], "[%d]", &k); err == nil {
-					n = k - 1
-				}
-			}
-			out.WriteByte(format[i])
-		}
-		if i >= len(format) {
-			break
-		}
+		d.out.WriteByte(format[i])
 		if format[i] == '%' {
-			out.WriteByte('%')
-			continue
+			i = d.directive(format, i+1)
 		}
-		verb := format[i]
-		if n >= 0 && n < len(args) {
-			verb = replaceVerb(verb, args, n)
-		}
-		out.WriteByte(verb)
-		n++
 	}
-	return out.String(), args
+	return d.out.String(), d.args
 }
 
-func replaceVerb(verb byte, args []any, n int) byte {
-	v, ok := Plain(args[n]).(Value)
-	if !ok {
-		return verb
+// directives rewrites a format. Where it has argument indices, every directive
+// gets one, so that arguments can be added.
+type directives struct {
+	out      strings.Builder
+	args     []any
+	n        int // next argument
+	explicit bool
+}
+
+// directive copies one directive, from behind its percent sign, and returns the
+// place of its verb.
+func (d *directives) directive(format string, i int) int {
+	for ; i < len(format) && strings.IndexByte("+-# 0123456789.*[", format[i]) >= 0; i++ {
+		switch format[i] {
+		case '*':
+			d.index(d.n)
+			d.n++
+			d.out.WriteByte('*')
+		case '[':
+			end := strings.IndexByte(format[i:], ']')
+			k, err := strconv.Atoi(format[i+1 : i+max(end, 1)])
+			if err != nil { // fmt words the mistake
+				d.out.WriteByte('[')
+				continue
+			}
+			d.n = k - 1
+			i += end
+		default:
+			d.out.WriteByte(format[i])
+		}
 	}
-	switch verb {
-	case 'T':
-		args[n] = typeName(v.T.Checked)
-		return 's'
-	case 'p':
-		args[n] = v.V
+	if i >= len(format) {
+		return i
 	}
-	return verb
+	if format[i] == '%' {
+		d.out.WriteByte('%')
+		return i
+	}
+	verb, n := format[i], d.n
+	if n >= 0 && n < len(d.args) {
+		verb, n = d.replace(verb, n)
+	}
+	d.index(n)
+	d.out.WriteByte(verb)
+	d.n++
+	return i
+}
+
+func (d *directives) index(n int) {
+	if d.explicit {
+		fmt.Fprintf(&d.out, "[%d]", n+1)
+	}
+}
+
+// replace returns the verb and argument that print args[n] for verb.
+func (d *directives) replace(verb byte, n int) (byte, int) {
+	v, ok := Plain(d.args[n]).(Value)
+	if !ok || verb != 'T' && verb != 'p' {
+		return verb, n
+	}
+	x := any(typeName(v.T.Checked))
+	if verb == 'p' {
+		x = v.V
+	} else {
+		verb = 's'
+	}
+	if d.explicit {
+		d.args = append(d.args, x)
+		return verb, len(d.args) - 1
+	}
+	d.args[n] = x
+	return verb, n
 }
 
 // line is fmt.Sprint: a space between two operands if neither is a string.

@@ -115,9 +115,7 @@ func (r *Run) Type(t types.Type, make func(*Type)) *Type {
 }
 
 // String names the type as the compiled program would.
-func (t *Type) String() string {
-	return types.TypeString(t.Checked, func(p *types.Package) string { return p.Name() })
-}
+func (t *Type) String() string { return typeName(t.Checked) }
 
 // Out is where the script's standard output goes.
 func (r *Run) Out() io.Writer { return r.streams.Out }

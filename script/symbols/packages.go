@@ -5,6 +5,14 @@ package symbols
 var Ketloom = []string{
 	"ketloom/basis",
 	"ketloom/basis/group",
+	"ketloom/basis/lattice",
+	"ketloom/lanczos",
+	"ketloom/lanczos/dense",
+	"ketloom/lanczos/entangle",
+	"ketloom/operator",
+	"ketloom/operator/matrix",
+	"ketloom/operator/model",
+	"ketloom/script/progress",
 }
 
 // Standard lists the packages of the standard library that scripts may import.
