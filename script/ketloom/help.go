@@ -5,7 +5,7 @@ import (
 	"os"
 	"strings"
 
-	"ketloom/script/symbols"
+	"ketloom/script"
 )
 
 const helpText = `ketloom runs Go programs for exact diagonalisation of lattice models.
@@ -79,8 +79,8 @@ func help(args []string) int {
 	case "check":
 		fmt.Print(helpCheck)
 	case "packages":
-		fmt.Printf("Packages that a script may import\n\n  %s\n\n  %s\n  cmp iter maps slices (in part)\n",
-			strings.Join(symbols.Ketloom, "\n  "), strings.Join(symbols.Standard, "\n  "))
+		ours, standard := script.Packages()
+		fmt.Printf("Packages that a script may import\n\n  %s\n\n  %s\n", strings.Join(ours, "\n  "), strings.Join(standard, "\n  "))
 	default:
 		fmt.Fprintf(os.Stderr, "ketloom: there is no help on %q; there is on run, check and packages\n", args[0])
 		return exitUsage

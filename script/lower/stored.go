@@ -41,7 +41,7 @@ func (c *compiler) makeForm(t types.Type, pos token.Pos) reflect.Type {
 	case *types.Map:
 		key := c.form(t.Key(), pos)
 		if holdsMethods(t.Key()) {
-			c.refuse(pos, "a map whose keys are or hold an interface with methods (%s) is not available; use a string or a number as key", t)
+			c.refuse(pos, "a map whose keys are or hold an interface with methods (%s) is not available; use a string or a number as key", t.Key())
 		}
 		return reflect.MapOf(key, c.form(t.Elem(), pos))
 	case *types.Chan:

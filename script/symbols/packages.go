@@ -7,6 +7,7 @@ var Ketloom = []string{
 	"ketloom/basis/group",
 	"ketloom/basis/lattice",
 	"ketloom/lanczos",
+	"ketloom/lanczos/archive",
 	"ketloom/lanczos/dense",
 	"ketloom/lanczos/entangle",
 	"ketloom/operator",

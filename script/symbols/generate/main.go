@@ -1,6 +1,11 @@
-// Command generate writes the symbol tables of package symbols. Run it through
-// go generate ./script/symbols; with the flag -check it writes nothing and
-// fails if a table is stale.
+// Command generate writes the symbol tables of package symbols: it reads the
+// lists in packages.go, type-checks each package from source and writes one Go
+// file a package. It needs the Go tool, for the location of the packages.
+//
+//	go generate ./script/symbols
+//
+// With the flag -check it writes nothing and fails if a table is stale. It may
+// import nothing of Ketloom.
 package main
 
 import (
@@ -10,8 +15,6 @@ import (
 	"os"
 	"path/filepath"
 	"sort"
-
-	"ketloom/script/symbols/generate/table"
 )
 
 func main() {
@@ -25,7 +28,7 @@ func main() {
 }
 
 func run(dir string, check bool) error {
-	files, err := table.Files(dir)
+	files, err := generated(dir)
 	if err != nil {
 		return err
 	}
@@ -52,7 +55,7 @@ func run(dir string, check bool) error {
 
 // remove deletes generated files that no package on the list stands for.
 func remove(dir string, files map[string][]byte, check bool) error {
-	have, err := filepath.Glob(filepath.Join(dir, table.Prefix+"*.go"))
+	have, err := filepath.Glob(filepath.Join(dir, prefix+"*.go"))
 	if err != nil {
 		return err
 	}

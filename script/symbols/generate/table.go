@@ -1,12 +1,4 @@
-// Package table makes the source of the symbol tables: it reads the lists in
-// packages.go, type-checks each package from source and writes one Go file a
-// package.
-//
-//	files, err := table.Files("script/symbols") // name -> source
-//
-// It needs the Go tool, for the location of the packages. It may import
-// nothing of Ketloom.
-package table
+package main
 
 import (
 	"bytes"
@@ -22,11 +14,11 @@ import (
 	"strings"
 )
 
-// Prefix starts the name of every generated file.
-const Prefix = "table_"
+// prefix starts the name of every generated file.
+const prefix = "table_"
 
-// Files returns the generated files of the folder dir by name.
-func Files(dir string) (map[string][]byte, error) {
+// generated returns the generated files of the folder dir by name.
+func generated(dir string) (map[string][]byte, error) {
 	list, err := packages(filepath.Join(dir, "packages.go"))
 	if err != nil {
 		return nil, err
@@ -42,7 +34,7 @@ func Files(dir string) (map[string][]byte, error) {
 		if err != nil {
 			return nil, fmt.Errorf("symbols: package %s: %w", path, err)
 		}
-		files[Prefix+strings.ReplaceAll(path, "/", "_")+".go"] = src
+		files[prefix+strings.ReplaceAll(path, "/", "_")+".go"] = src
 	}
 	return files, nil
 }

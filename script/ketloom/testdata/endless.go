@@ -1,0 +1,9 @@
+package main
+
+import "fmt"
+
+func main() {
+	fmt.Println("ready")
+	for {
+	}
+}

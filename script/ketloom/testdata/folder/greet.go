@@ -1,0 +1,5 @@
+package main
+
+import "fmt"
+
+func greet() { fmt.Println("from a folder") }

@@ -1,0 +1,6 @@
+package main
+
+func main() {
+	x := 1
+	y = 2
+}
