@@ -20,7 +20,7 @@ type sector struct {
 
 // solveMomenta computes the lowest levels of the momentum asked for, or of all
 // that hold states.
-func solveMomenta(ctx context.Context, s settings, r ring, bar *progress.Bar) ([]sector, error) {
+func solveMomenta(ctx context.Context, s settings, r ring, bar *progress.Display) ([]sector, error) {
 	var sectors []sector
 	for k := 0; k < s.length; k++ {
 		if s.momentum >= 0 && s.momentum != k {
@@ -49,7 +49,7 @@ func solveMomenta(ctx context.Context, s settings, r ring, bar *progress.Bar) ([
 			return nil, fmt.Errorf("momentum %d: %w", k, err)
 		}
 		sectors = append(sectors, sector{momentum: k, basis: b, result: result})
-		bar.Hook("momenta", int64(k+1), int64(s.length), 0)
+		bar.Report("momenta", int64(k+1), int64(s.length), 0)
 	}
 	return sectors, nil
 }

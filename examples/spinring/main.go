@@ -78,7 +78,9 @@ func study(ctx context.Context, s settings) error {
 	}
 	fmt.Printf("ring of %d spins 1/2, %d up (Sz = %g), J = %g, anisotropy = %g\n",
 		s.length, s.up, float64(2*s.up-s.length)/2, s.coupling, s.anisotropy)
-	sectors, err := solveMomenta(ctx, s, r, progress.Terminal(os.Stderr))
+	bar := progress.Terminal(os.Stderr)
+	sectors, err := solveMomenta(ctx, s, r, bar)
+	bar.Close()
 	if err != nil {
 		return err
 	}
