@@ -3,6 +3,7 @@ package entangle
 import (
 	"fmt"
 	"math/bits"
+	"slices"
 )
 
 // Exclusion is a generalised exclusion rule on a ring of orbitals: at most Most
@@ -18,9 +19,11 @@ type Exclusion struct {
 	Bosons      bool
 }
 
-// OrbitalCharge is what each orbital of a ring carries, such as a lattice
-// momentum modulo a length (Bernevig and Regnault, Phys. Rev. B 85, 075128,
-// 2012).
+// OrbitalCharge is what a particle carries in each orbital of a ring, such as the
+// momentum j of Landau orbital j, or a lattice momentum: folded onto a lattice of
+// lx × ly cells, orbital j = ky + ly·kx has the values kx modulo lx and ky modulo ly
+// (Bernevig and Regnault, Phys. Rev. B 85, 075128, 2012). [Exclusion.OnTorus]
+// counts by the momenta of many particles on such a lattice.
 type OrbitalCharge struct {
 	Modulus int // 0 for an integer charge
 	Values  []int
@@ -32,30 +35,44 @@ type SectorCount struct {
 	Count   uint64
 }
 
-// mostWindows bounds the work of a count: the number of ways to fill Range-1
-// orbitals.
-const mostWindows = 1 << 16
+// Bounds of an exclusion rule that can be counted.
+const (
+	// MostOrbitals is the largest number of orbitals of a ring.
+	MostOrbitals = 1024
+	// MostWindows is the largest number of admissible fillings of Range-1
+	// consecutive orbitals.
+	MostWindows = 4096
+	// MostSteps is the largest number of steps of a count.
+	MostSteps = 2e8
+	// MostListed is the largest number of configurations that are listed.
+	MostListed = 1 << 20
+	// LargestCarried is the largest magnitude of a value or modulus.
+	LargestCarried = 1 << 20
+)
 
 // check reports why the rule cannot be counted.
 func (e Exclusion) check(particles int, charges []OrbitalCharge) error {
-	if e.Most < 1 || e.Range < 1 || e.Orbitals < 1 || e.Orbitals > 64 {
-		return fmt.Errorf("entangle: at most %d particles in %d consecutive of %d orbitals; give positive numbers and at most 64 orbitals", e.Most, e.Range, e.Orbitals)
-	}
-	if e.Range > e.Orbitals {
-		return fmt.Errorf("entangle: a rule over %d consecutive orbitals on a ring of %d", e.Range, e.Orbitals)
-	}
-	if particles < 0 {
-		return fmt.Errorf("entangle: %d particles", particles)
-	}
-	windows := 1
-	for range e.Range - 1 {
-		if windows *= e.highest() + 1; windows > mostWindows {
-			return fmt.Errorf("entangle: a rule over %d orbitals has too many windows to count", e.Range)
-		}
+	switch {
+	case e.Most < 1 || e.Range < 1 || e.Most > MostWindows:
+		return fmt.Errorf("entangle: at most %d particles in %d consecutive orbitals; give positive numbers, of particles up to %d", e.Most, e.Range, MostWindows)
+	case e.Orbitals < 1 || e.Orbitals > MostOrbitals:
+		return fmt.Errorf("entangle: a ring of %d orbitals; 1 … %d are possible", e.Orbitals, MostOrbitals)
+	case e.Range > e.Orbitals:
+		return fmt.Errorf("entangle: a rule over %d consecutive orbitals on a ring of %d; give a range that fits on the ring", e.Range, e.Orbitals)
+	case particles < 0:
+		return fmt.Errorf("entangle: %d particles; give 0 or more", particles)
 	}
 	for i, q := range charges {
-		if len(q.Values) != e.Orbitals || q.Modulus < 0 {
-			return fmt.Errorf("entangle: charge %d has %d values modulo %d for %d orbitals; give one an orbital and a modulus of at least 0", i, len(q.Values), q.Modulus, e.Orbitals)
+		if len(q.Values) != e.Orbitals {
+			return fmt.Errorf("entangle: charge %d has %d values for %d orbitals; give one an orbital", i, len(q.Values), e.Orbitals)
+		}
+		if q.Modulus < 0 || q.Modulus > LargestCarried {
+			return fmt.Errorf("entangle: charge %d is taken modulo %d; use 0 (an integer charge) or 1 … %d", i, q.Modulus, LargestCarried)
+		}
+		for _, v := range q.Values {
+			if v > LargestCarried || v < -LargestCarried {
+				return fmt.Errorf("entangle: charge %d has the value %d; the largest is %d", i, v, LargestCarried)
+			}
 		}
 	}
 	return nil
@@ -69,7 +86,12 @@ func (e Exclusion) highest() int {
 	return 1
 }
 
-// Count returns the number of admissible configurations of the particles.
+// Count returns the number of admissible configurations of the particles. For
+// Most = 1 it is, with r = Range,
+//
+//	Orbitals·(Orbitals-(r-1)·n-1)! / (n!·(Orbitals-r·n)!).
+//
+// Errors: as of [Exclusion.BySector].
 func (e Exclusion) Count(particles int) (uint64, error) {
 	counts, err := e.BySector(particles, nil)
 	if err != nil || len(counts) == 0 {
@@ -79,59 +101,34 @@ func (e Exclusion) Count(particles int) (uint64, error) {
 }
 
 // BySector returns the number of admissible configurations by the total charges
-// of the particles, sorted by charges; sectors without any are left out. It
-// carries the window of the last Range-1 orbitals along the ring, once for each
-// window that the ring can begin with, so that configurations are counted, not
-// visited.
+// of the particles, ascending in the charges; sectors without any are left out.
+// With Orbitals = 3·particles the rule (1,3) has three configurations in all, the
+// thin-torus patterns of the three ground states.
+//
+// A window of Range-1 orbitals is carried along the ring, once for each window
+// that the ring can begin with, so that configurations are counted, not visited.
+//
+// Errors: an impossible rule, charges for another number of orbitals, more than
+// MostWindows windows or MostSteps steps, a number that 64 bits do not hold.
 func (e Exclusion) BySector(particles int, charges []OrbitalCharge) ([]SectorCount, error) {
 	if err := e.check(particles, charges); err != nil {
 		return nil, err
 	}
-	total := map[string]*SectorCount{}
-	for _, begin := range e.windows() {
-		paths := map[string]*path{}
-		if !e.addPath(paths, e.begin(begin, charges), particles) {
-			continue
-		}
-		for orbital := e.Range - 1; orbital < e.Orbitals; orbital++ {
-			next := map[string]*path{}
-			for _, key := range sortedKeys(paths) {
-				for fill := 0; fill <= e.highest(); fill++ {
-					if err := e.extend(next, paths[key], orbital, fill, charges, particles); err != nil {
-						return nil, err
-					}
-				}
-			}
-			paths = next
-		}
-		for _, key := range sortedKeys(paths) {
-			p := paths[key]
-			if p.particles == particles && e.closes(p.window, begin) {
-				if err := addCount(total, p); err != nil {
-					return nil, err
-				}
-			}
+	windows, err := e.windows()
+	if err != nil {
+		return nil, err
+	}
+	c := newCounter(e, particles, charges, windows)
+	for begin := range windows {
+		if err := c.around(begin); err != nil {
+			return nil, err
 		}
 	}
-	counts := make([]SectorCount, 0, len(total))
-	for _, c := range total {
-		counts = append(counts, *c)
-	}
-	sortCounts(counts)
-	return counts, nil
+	return c.counts(), nil
 }
 
-// path is a number of ways to fill the orbitals so far that end in the same
-// window with the same particles and charges.
-type path struct {
-	window    []int
-	particles int
-	charges   []int
-	count     uint64
-}
-
-// windows lists the admissible fillings of Range-1 orbitals.
-func (e Exclusion) windows() [][]int {
+// windows lists the admissible fillings of Range-1 orbitals, ascending.
+func (e Exclusion) windows() ([][]int, error) {
 	list := [][]int{{}}
 	for range e.Range - 1 {
 		var longer [][]int
@@ -140,9 +137,11 @@ func (e Exclusion) windows() [][]int {
 				longer = append(longer, append(w[:len(w):len(w)], fill))
 			}
 		}
-		list = longer
+		if list = longer; len(list) > MostWindows {
+			return nil, fmt.Errorf("entangle: %d orbitals can be filled in more than %d ways with at most %d particles; give a shorter range or fewer particles", e.Range-1, MostWindows, e.Most)
+		}
 	}
-	return list
+	return list, nil
 }
 
 func sum(list []int) int {
@@ -153,61 +152,135 @@ func sum(list []int) int {
 	return total
 }
 
-// begin is the path over the first window.
-func (e Exclusion) begin(window []int, charges []OrbitalCharge) *path {
-	p := &path{window: window, charges: make([]int, len(charges)), count: 1}
-	for orbital, fill := range window {
-		p.particles += fill
-		p.charges = carried(p.charges, charges, orbital, fill)
-	}
-	return p
+// counter carries numbers of ways along the ring.
+type counter struct {
+	rule      Exclusion
+	particles int
+	charges   []OrbitalCharge
+	windows   [][]int
+	step      [][]int        // window after another orbital, [window][fill], -1 for none
+	sectors   [][]int        // charges by number
+	number    map[string]int // of charges
+	ways      map[path]uint64
+	total     map[int]uint64 // by sector
+	steps     float64
 }
 
-// carried adds the charges of the particles in an orbital.
-func carried(old []int, charges []OrbitalCharge, orbital, fill int) []int {
-	out := make([]int, len(charges))
-	for i, q := range charges {
-		out[i] = old[i] + fill*q.Values[orbital]
-		if q.Modulus > 0 {
-			out[i] = (out[i]%q.Modulus + q.Modulus) % q.Modulus
-		}
+// path is where the ways end that are counted together.
+type path struct{ window, particles, sector int }
+
+func newCounter(e Exclusion, particles int, charges []OrbitalCharge, windows [][]int) *counter {
+	c := &counter{rule: e, particles: particles, charges: charges, windows: windows, number: map[string]int{}, total: map[int]uint64{}}
+	of := map[string]int{}
+	for i, w := range windows {
+		of[keyOf(w)] = i
 	}
-	return out
+	for _, w := range windows {
+		next := make([]int, e.highest()+1)
+		for fill := range next {
+			next[fill] = -1
+			if sum(w)+fill <= e.Most {
+				next[fill] = of[keyOf(append(w[:len(w):len(w)], fill)[1:])]
+			}
+		}
+		c.step = append(c.step, next)
+	}
+	return c
 }
 
-// extend adds the path with one more orbital filled, if the rule allows.
-func (e Exclusion) extend(next map[string]*path, p *path, orbital, fill int, charges []OrbitalCharge, particles int) error {
-	if sum(p.window)+fill > e.Most {
-		return nil
+// around adds the configurations that begin with a window.
+func (c *counter) around(begin int) error {
+	first := c.windows[begin]
+	sector := c.carried(-1, 0, 0)
+	for orbital, fill := range first {
+		sector = c.carried(sector, orbital, fill)
 	}
-	longer := &path{
-		window:    append(append([]int(nil), p.window...), fill)[1:],
-		particles: p.particles + fill,
-		charges:   carried(p.charges, charges, orbital, fill),
-		count:     p.count,
+	c.ways = map[path]uint64{}
+	if n := sum(first); n <= c.particles {
+		c.ways[path{begin, n, sector}] = 1
 	}
-	key := fmt.Sprint(longer.window, longer.particles, longer.charges)
-	if known := next[key]; known != nil {
-		s, carry := bits.Add64(known.count, longer.count, 0)
-		if carry != 0 {
-			return errOverflow
+	for orbital := c.rule.Range - 1; orbital < c.rule.Orbitals; orbital++ {
+		if err := c.extend(orbital); err != nil {
+			return err
 		}
-		known.count = s
-		return nil
 	}
-	e.addPath(next, longer, particles)
+	for p, n := range c.ways {
+		if p.particles != c.particles || !c.rule.closes(c.windows[p.window], first) {
+			continue
+		}
+		if err := addTo(c.total, p.sector, n); err != nil {
+			return err
+		}
+	}
 	return nil
 }
 
-func (e Exclusion) addPath(paths map[string]*path, p *path, particles int) bool {
-	if p.particles > particles {
-		return false
+// extend fills one more orbital in every way that the rule allows.
+func (c *counter) extend(orbital int) error {
+	next := make(map[path]uint64, len(c.ways))
+	for p, n := range c.ways {
+		for fill, window := range c.step[p.window] {
+			if window < 0 || p.particles+fill > c.particles {
+				continue
+			}
+			to := path{window, p.particles + fill, c.carried(p.sector, orbital, fill)}
+			if err := addTo(next, to, n); err != nil {
+				return err
+			}
+		}
 	}
-	paths[fmt.Sprint(p.window, p.particles, p.charges)] = p
-	return true
+	if c.steps += float64(len(c.ways)); c.steps > MostSteps {
+		return fmt.Errorf("entangle: counting takes more than %g steps; give fewer charges, particles or orbitals", float64(MostSteps))
+	}
+	c.ways = next
+	return nil
 }
 
-var errOverflow = fmt.Errorf("entangle: more than 1.8e19 admissible configurations")
+// carried returns the sector after some particles are put into an orbital; the
+// sector -1 stands for no particle yet.
+func (c *counter) carried(sector, orbital, fill int) int {
+	if sector >= 0 && fill == 0 {
+		return sector
+	}
+	q := make([]int, len(c.charges))
+	for i, charge := range c.charges {
+		if sector >= 0 {
+			q[i] = c.sectors[sector][i] + fill*charge.Values[orbital]
+		}
+		if charge.Modulus > 0 {
+			q[i] = (q[i]%charge.Modulus + charge.Modulus) % charge.Modulus
+		}
+	}
+	key := keyOf(q)
+	number, ok := c.number[key]
+	if !ok {
+		number = len(c.sectors)
+		c.number[key] = number
+		c.sectors = append(c.sectors, q)
+	}
+	return number
+}
+
+// counts returns the totals, ascending in the charges.
+func (c *counter) counts() []SectorCount {
+	list := make([]SectorCount, 0, len(c.total))
+	for sector, n := range c.total {
+		list = append(list, SectorCount{c.sectors[sector], n})
+	}
+	slices.SortFunc(list, func(a, b SectorCount) int { return slices.Compare(a.Charges, b.Charges) })
+	return list
+}
+
+// addTo adds exactly. Whether it overflows does not depend on the order, since
+// nothing is subtracted.
+func addTo[K comparable](ways map[K]uint64, key K, n uint64) error {
+	total, carry := bits.Add64(ways[key], n, 0)
+	if carry != 0 {
+		return fmt.Errorf("entangle: more than 1.8e19 admissible configurations; 64 bits do not hold the number, give fewer particles or orbitals")
+	}
+	ways[key] = total
+	return nil
+}
 
 // closes reports whether the last window and the first one obey the rule across
 // the end of the ring.
@@ -219,17 +292,4 @@ func (e Exclusion) closes(last, first []int) bool {
 		}
 	}
 	return true
-}
-
-func addCount(total map[string]*SectorCount, p *path) error {
-	key := fmt.Sprint(p.charges)
-	if total[key] == nil {
-		total[key] = &SectorCount{Charges: p.charges}
-	}
-	s, carry := bits.Add64(total[key].Count, p.count, 0)
-	if carry != 0 {
-		return errOverflow
-	}
-	total[key].Count = s
-	return nil
 }

@@ -4,52 +4,86 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 
 	"ketloom/basis"
 )
 
-// ParticleCut returns the spectrum of the reduced density operator of some of
-// the particles, of one state of N identical particles or of the equal mixture of
-// several (Sterdyniak, Regnault and Bernevig, Phys. Rev. Lett. 106, 100405,
-// 2011). It is ρ_A = M M†, trace one, with
+// ParticleCut returns the spectrum of the reduced density operator of part out
+// of N identical particles, of one state or of the equal mixture of several
+// (Sterdyniak, Regnault and Bernevig, Phys. Rev. Lett. 106, 100405, 2011). It is
+// ρ_A = M M†, of trace one, with
 //
 //	fermions:  M_ab = ±ψ(a∪b) C(N,part)^(-1/2), a and b without common mode and ±
 //	           the sign of bringing the creators of a to the front;
 //	bosons:    M_ab = ψ(a+b) [Π_i C(a_i+b_i, a_i) / C(N,part)]^(1/2).
 //
-// Electrons are fermions with two modes a site. Blocks are labelled by the
-// charges of the part other than the particle number, of those charges that the
-// sectors of all states fix, such as the momenta that orbitals carry.
+// Electrons are fermions with two modes a site. For a mixture the columns of the
+// states stand side by side, each with the weight n^(-1/2).
+//
+// Blocks are labelled by the charges of the part's particles, what empty sites
+// carry left out: of the charges that the sectors of all states fix, such as the
+// momenta that orbitals carry, and of 2Sz where it is conserved; the particle
+// number itself is no label.
 //
 // Errors: as of [SpaceCut]; spin sites; bosons together with fermions; a number
 // of particles that is not definite or differs between the states; a part that
-// is not between 1 and N-1.
+// is not between 1 and N.
 //
-// Cost: C(N, part) entries for each product state, 40 bytes each, then a singular
-// value decomposition of each block.
+// Cost: as of [SpaceCut], with C(N,part) amplitudes for each product state.
 func ParticleCut(ctx context.Context, states []State, part int, opts *Options) (*Spectrum, error) {
-	space, charges, err := common(states)
+	space, err := common(states)
 	if err != nil {
 		return nil, err
 	}
 	if err := oneStatistics(space); err != nil {
 		return nil, err
 	}
-	total := particles(space, states[0].basis.At(0))
-	if part < 1 || part >= total {
-		return nil, fmt.Errorf("entangle: a part of %d out of %d particles; 1 … %d are possible", part, total, total-1)
+	options, err := opts.withDefaults()
+	if err != nil {
+		return nil, err
 	}
-	o := opts.withDefaults()
-	cut := cutter{space: space, part: part, total: total, limit: o.Memory / 40, ctx: ctx}
-	cut.scale = 1 / math.Sqrt(float64(len(states))*binomial(total, part))
-	for n, s := range states {
-		cut.state = int32(n)
-		if err := s.each(cut.split); err != nil {
-			return nil, err
+	total, err := definiteNumber(states)
+	if err != nil {
+		return nil, err
+	}
+	if part < 1 || part > total {
+		return nil, fmt.Errorf("entangle: a part of %d out of %d particles; 1 … %d are possible", part, total, total)
+	}
+	k := &cut{states: states, space: space, number: total, options: options}
+	number := space.ParticleNumber()
+	for _, q := range fixedCharges(states) {
+		if !sameCharge(q, number) {
+			k.fixed = append(k.fixed, q)
 		}
 	}
-	charges = withoutNumber(space, charges)
-	return spectrum(ctx, cut.entries, names(charges), chargedParticles(space, charges), o)
+	k.maybe = unfixed(space, append(k.fixed[:len(k.fixed):len(k.fixed)], number))
+	k.split = newTaker(space, part, total).split
+	return k.spectrum(ctx)
+}
+
+// NaturalOccupations returns the eigenvalues of the one-body density matrix
+// ⟨c†_i c_j⟩ over all modes, descending, their sum being the number of particles
+// (Löwdin, Phys. Rev. 97, 1474, 1955). For a mixture the matrix is the mean.
+// Electron sites count two modes. Errors: as of [ParticleCut].
+func NaturalOccupations(ctx context.Context, states []State, opts *Options) ([]float64, error) {
+	s, err := ParticleCut(ctx, states, 1, opts)
+	if err != nil {
+		return nil, err
+	}
+	space := states[0].basis.Space()
+	number, err := definiteNumber(states)
+	if err != nil {
+		return nil, err
+	}
+	var list []float64
+	for _, l := range s.all() {
+		list = append(list, float64(number)*l.Weight)
+	}
+	for len(list) < space.Modes() {
+		list = append(list, 0)
+	}
+	return list, nil
 }
 
 // oneStatistics reports why the sites of a space do not hold identical
@@ -72,6 +106,39 @@ func oneStatistics(space *basis.Space) error {
 	return nil
 }
 
+// definiteNumber returns the number of particles of all states, by their
+// representatives; the other configurations of their orbits are seen later.
+func definiteNumber(states []State) (int, error) {
+	number := -1
+	for _, s := range states {
+		space := s.basis.Space()
+		for i := range s.basis.Len() {
+			if s.amplitude(i) == 0 {
+				continue
+			}
+			n := particles(space, s.basis.At(i))
+			if number >= 0 && n != number {
+				return 0, errNumber(number, n)
+			}
+			number = n
+			if s.fixesNumber() {
+				break
+			}
+		}
+	}
+	return number, nil
+}
+
+// fixesNumber reports whether the sector of s fixes the particle number.
+func (s State) fixesNumber() bool {
+	number := s.basis.Space().ParticleNumber()
+	return slices.ContainsFunc(s.basis.Sector().Charges, func(q basis.ChargeValue) bool { return sameCharge(q.Charge, number) })
+}
+
+func errNumber(a, b int) error {
+	return fmt.Errorf("entangle: a particle cut of states with %d and with %d particles; fix one particle number in the sectors of all states", a, b)
+}
+
 // particles counts the particles of a configuration.
 func particles(space *basis.Space, c basis.Configuration) int {
 	n := 0
@@ -81,99 +148,78 @@ func particles(space *basis.Space, c basis.Configuration) int {
 	return n
 }
 
-// withoutNumber drops charges that are the particle number.
-func withoutNumber(space *basis.Space, charges []basis.Charge) []basis.Charge {
-	number := fmt.Sprint(space.ParticleNumber().Weights)
-	var rest []basis.Charge
-	for _, q := range charges {
-		if q.Modulus != 0 || fmt.Sprint(q.Weights) != number {
-			rest = append(rest, q)
+// taker takes particles out of product states in every possible way.
+type taker struct {
+	modes []basis.Mode
+	part  int
+	scale float64 // C(N,part)^(-1/2)
+	roots [][]float64
+}
+
+func newTaker(space *basis.Space, part, total int) *taker {
+	t := &taker{part: part, scale: 1 / math.Sqrt(binomial(total, part))}
+	highest := 1
+	for m := range space.Modes() {
+		mode := space.Mode(m)
+		t.modes = append(t.modes, mode)
+		highest = max(highest, mode.Levels-1)
+	}
+	for n := range highest + 1 {
+		row := make([]float64, n+1)
+		for k := range row {
+			row[k] = math.Sqrt(binomial(n, k))
+		}
+		t.roots = append(t.roots, row)
+	}
+	return t
+}
+
+// heap is the particles in one mode.
+type heap struct {
+	shift, level int
+	fermionic    bool
+	above        int // particles in the modes above
+}
+
+func (t *taker) split(c uint64, emit func(part, rest uint64, factor float64)) {
+	var heaps [basis.MostBits]heap
+	n, above := basis.MostBits, 0
+	for i := len(t.modes) - 1; i >= 0; i-- {
+		mode := t.modes[i]
+		if level := mode.Level(basis.Configuration(c)); level > 0 {
+			n--
+			heaps[n] = heap{mode.Shift, level, mode.Fermionic, above}
+			above += level
 		}
 	}
-	return rest
+	t.take(c, heaps[n:], t.part, 0, 0, t.scale, emit)
 }
 
-// chargedParticles returns the charges of a configuration of the part's
-// particles; what empty sites carry counts nothing.
-func chargedParticles(space *basis.Space, charges []basis.Charge) func(row uint64) []int {
-	weights := make([][][]int, len(charges))
-	for i, q := range charges {
-		weights[i], _ = q.ModeWeights(space)
-	}
-	return func(row uint64) []int {
-		q := make([]int, len(charges))
-		for i, charge := range charges {
-			for m := range space.Modes() {
-				q[i] += weights[i][m][space.Mode(m).Level(basis.Configuration(row))]
-			}
-			if charge.Modulus > 0 {
-				q[i] = (q[i]%charge.Modulus + charge.Modulus) % charge.Modulus
-			}
-		}
-		return q
-	}
-}
-
-// cutter collects the entries of a particle cut.
-type cutter struct {
-	ctx         context.Context
-	space       *basis.Space
-	part, total int
-	scale       float64
-	state       int32
-	limit       int64
-	entries     []entry
-	looked      int
-}
-
-// split adds an entry for each way to take the part's particles out of c.
-func (k *cutter) split(c basis.Configuration, amplitude complex128) error {
-	if k.looked++; k.looked%1024 == 0 && k.ctx.Err() != nil {
-		return k.ctx.Err()
-	}
-	if amplitude == 0 {
-		return nil
-	}
-	if n := particles(k.space, c); n != k.total {
-		return fmt.Errorf("entangle: a particle cut of states with %d and with %d particles; fix one number", k.total, n)
-	}
-	if int64(len(k.entries)) > k.limit {
-		return fmt.Errorf("entangle: the particle cut needs more than %d entries; cut off fewer particles, or raise Options.Memory", k.limit)
-	}
-	k.choose(uint64(c), 0, k.part, 0, 1, amplitude)
-	return nil
-}
-
-// choose takes `left` particles out of the modes from m on; a is what was taken
-// from the modes below, ways the product of the binomials there.
-func (k *cutter) choose(c uint64, m, left int, a uint64, ways float64, amplitude complex128) {
+// take takes left particles out of the heaps; a is what was taken below, skipped
+// the number of fermions left there.
+func (t *taker) take(c uint64, heaps []heap, left int, a uint64, skipped int, factor float64, emit func(part, rest uint64, factor float64)) {
 	if left == 0 {
-		k.put(c, a, ways, amplitude)
+		emit(a, c-a, factor) // field by field, since no mode of a exceeds that of c
 		return
 	}
-	if m == k.space.Modes() {
-		return
-	}
-	mode := k.space.Mode(m)
-	here := mode.Level(basis.Configuration(c))
-	for take := 0; take <= min(here, left); take++ {
-		k.choose(c, m+1, left-take, a|uint64(take)<<mode.Shift, ways*binomial(here, take), amplitude)
+	h := heaps[0]
+	for n := max(0, left-h.above); n <= min(h.level, left); n++ {
+		f, over := factor*t.roots[h.level][n], skipped
+		if h.fermionic {
+			over += h.level - n
+			if n == 1 && skipped&1 == 1 {
+				f = -f
+			}
+		}
+		t.take(c, heaps[1:], left-n, a|uint64(n)<<h.shift, over, f, emit)
 	}
 }
 
-func (k *cutter) put(c, a uint64, ways float64, amplitude complex128) {
-	b := c - a // field by field, since no mode of a exceeds that of c
-	if overtaken(uint64(k.space.FermionBits()), a, b) {
-		amplitude = -amplitude
-	}
-	k.entries = append(k.entries, entry{a, b, k.state, amplitude * complex(k.scale*math.Sqrt(ways), 0)})
-}
-
-// binomial returns n choose k.
+// binomial returns n choose k, exact below 2^53.
 func binomial(n, k int) float64 {
 	value := 1.0
 	for i := range k {
-		value = value * float64(n-i) / float64(i+1)
+		value = math.Round(value * float64(n-i) / float64(i+1))
 	}
-	return math.Round(value)
+	return value
 }
