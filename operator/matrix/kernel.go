@@ -18,6 +18,30 @@ type kernel struct {
 	coefficient complex128
 }
 
+// bundle is the kernels that ask for the same occupied bits, so that one test
+// passes over all of them.
+type bundle struct {
+	value   uint64
+	kernels []kernel
+}
+
+// bundled groups kernels by their occupied bits; groups and kernels keep the
+// order in which they are met first.
+func bundled(list []kernel) []bundle {
+	var bundles []bundle
+	place := map[uint64]int{}
+	for _, k := range list {
+		at, known := place[k.value]
+		if !known {
+			at = len(bundles)
+			place[k.value] = at
+			bundles = append(bundles, bundle{value: k.value})
+		}
+		bundles[at].kernels = append(bundles[at].kernels, k)
+	}
+	return bundles
+}
+
 // compile translates the canonical form of op; those that leave a configuration
 // as it is come apart from the others.
 func compile(op operator.Operator) (diagonal, moving []kernel) {

@@ -53,15 +53,16 @@ func Estimate(op operator.Operator, b *basis.Basis, opts *Options) (Plan, error)
 // newRows compiles op between two bases.
 func newRows(op operator.Operator, from, to *basis.Basis) *rows {
 	r := &rows{to: to, from: from, phases: from.Phases()}
-	r.diagonal, r.moving = compile(op.Adjoint())
+	diagonal, moving := compile(op.Adjoint())
+	r.diagonal, r.moving, r.kernels = diagonal, bundled(moving), len(diagonal)+len(moving)
 	r.unfold = to.GroupOrder() == 1 && from.GroupOrder() > 1
 	return r
 }
 
 // isReal reports whether every element is real.
 func (r *rows) isReal() bool {
-	for _, list := range [][]kernel{r.diagonal, r.moving} {
-		for _, k := range list {
+	for _, b := range append([]bundle{{kernels: r.diagonal}}, r.moving...) {
+		for _, k := range b.kernels {
 			if imag(k.coefficient) != 0 {
 				return false
 			}
@@ -93,7 +94,7 @@ func (r *rows) plan(o Options) (Plan, error) {
 	}
 	p.Values = len(distinct)
 	p.StoredBytes = p.Elements*elementBytes(p) + int64(n)*(8+numberBytes(p.Real)) + int64(p.Values)*numberBytes(p.Real)
-	p.choose(o, int64(len(r.diagonal)+len(r.moving))*48)
+	p.choose(o, int64(r.kernels)*48)
 	if o.Form == Stored && p.StoredBytes > o.Memory {
 		return p, fmt.Errorf("matrix: the stored form needs %d MiB, more than the limit of %d MiB; raise Options.Memory or leave the form to Auto", p.StoredBytes>>20, o.Memory>>20)
 	}

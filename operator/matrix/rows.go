@@ -15,10 +15,12 @@ import (
 // the source basis. For an O that carries the source sector into the target
 // sector it is (amplitude · χ(h)*ε)* (N_j/N_i)^½.
 type rows struct {
-	to, from         *basis.Basis
-	diagonal, moving []kernel // of O†
-	phases           []complex128
-	unfold           bool // target without symmetry, source with one
+	to, from *basis.Basis
+	diagonal []kernel // of O†, those that leave a configuration as it is
+	moving   []bundle // of O†, the others
+	kernels  int
+	phases   []complex128
+	unfold   bool // target without symmetry, source with one
 }
 
 // element is a matrix element in a row.
@@ -58,8 +60,14 @@ func (r *rows) row(i int, s *scratch) (elements []element, diagonal complex128) 
 		r.add(s, i, c, here)
 	}
 	for k := range r.moving {
-		if m := &r.moving[k]; c&m.mask == m.value {
-			r.add(s, i, c^m.flip, m.amplitude(c))
+		b := &r.moving[k]
+		if c&b.value != b.value {
+			continue
+		}
+		for n := range b.kernels {
+			if m := &b.kernels[n]; c&m.mask == m.value {
+				r.add(s, i, c^m.flip, m.amplitude(c))
+			}
 		}
 	}
 	s.merge()

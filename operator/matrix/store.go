@@ -37,12 +37,46 @@ type store struct {
 	diagonal     []complex128
 }
 
-// segment is a block of rows before it is joined to the others.
+// segment is a block of rows before it is joined to the others. Its values are
+// numbers in the table of the coder, or plain where the coder gave up.
 type segment struct {
 	lengths  []int32
 	columns  []uint64
+	coder    *coder
+	codes    []uint32
 	values   []complex128
 	diagonal []complex128
+}
+
+// coder numbers the distinct values that one goroutine meets.
+type coder struct {
+	number map[[2]uint64]uint32 // by the bits of the value; nil once it gave up
+	table  []complex128
+	global []int32 // the code of the store, -1 until there is one
+}
+
+// mostLocal is the number of distinct values at which a coder gives up.
+const mostLocal = 4 * mostCodes
+
+// code returns the number of a value; ok is false if the coder gave up.
+func (k *coder) code(v complex128) (n uint32, ok bool) {
+	if k.number == nil {
+		return 0, false
+	}
+	key := [2]uint64{math.Float64bits(real(v)), math.Float64bits(imag(v))}
+	n, known := k.number[key]
+	if known {
+		return n, true
+	}
+	if len(k.table) == mostLocal {
+		k.number = nil
+		return 0, false
+	}
+	n = uint32(len(k.table))
+	k.number[key] = n
+	k.table = append(k.table, v)
+	k.global = append(k.global, -1)
+	return n, true
 }
 
 // fill computes all rows in parallel and packs them in order.
@@ -54,19 +88,25 @@ func fill(ctx context.Context, r *rows, p Plan, o Options) (*store, error) {
 	// Blocks are computed in groups, so that what waits to be packed stays small.
 	group := 8 * o.Workers
 	segments := make([]segment, group)
+	work := make([]builder, o.Workers)
+	for w := range work {
+		work[w].coder = &coder{}
+		if p.Values <= mostCodes {
+			work[w].coder.number = map[[2]uint64]uint32{}
+		}
+	}
 	for first := 0; first < blocks; first += group {
 		last := min(first+group, blocks)
 		var next atomic.Int64
 		var wg sync.WaitGroup
-		for range o.Workers {
+		for w := range work {
 			wg.Go(func() {
-				var work scratch
 				for {
 					b := first + int(next.Add(1)) - 1
 					if b >= last || ctx.Err() != nil {
 						return
 					}
-					segments[b-first].compute(r, b*blockRows, min((b+1)*blockRows, p.Rows), &work)
+					segments[b-first].compute(r, b*blockRows, min((b+1)*blockRows, p.Rows), &work[w])
 				}
 			})
 		}
@@ -98,17 +138,40 @@ func newReporter(hook func(string, int64, int64, float64), total int64) func(don
 	}
 }
 
-func (g *segment) compute(r *rows, first, last int, s *scratch) {
-	g.lengths, g.columns, g.values, g.diagonal = g.lengths[:0], g.columns[:0], g.values[:0], g.diagonal[:0]
+// builder is the working memory of one goroutine that builds.
+type builder struct {
+	scratch scratch
+	coder   *coder
+}
+
+func (g *segment) compute(r *rows, first, last int, w *builder) {
+	g.lengths, g.columns, g.codes, g.values, g.diagonal = g.lengths[:0], g.columns[:0], g.codes[:0], g.values[:0], g.diagonal[:0]
+	g.coder = w.coder
 	for i := first; i < last; i++ {
-		elements, diagonal := r.row(i, s)
+		elements, diagonal := r.row(i, &w.scratch)
 		g.lengths = append(g.lengths, int32(len(elements)))
 		g.diagonal = append(g.diagonal, diagonal)
 		for _, e := range elements {
 			g.columns = append(g.columns, uint64(e.column))
-			g.values = append(g.values, e.value)
+			g.put(e.value)
 		}
 	}
+}
+
+// put appends a value. Where the coder gives up, what the segment has so far is
+// written out.
+func (g *segment) put(v complex128) {
+	if g.coder != nil {
+		if n, ok := g.coder.code(v); ok {
+			g.codes = append(g.codes, n)
+			return
+		}
+		for _, n := range g.codes {
+			g.values = append(g.values, g.coder.table[n])
+		}
+		g.codes, g.coder = g.codes[:0], nil
+	}
+	g.values = append(g.values, v)
 }
 
 // packer appends segments to a store and codes their values. It starts with
@@ -155,13 +218,30 @@ func (k *packer) add(first int, g *segment) {
 			s.diagonal = append(s.diagonal, g.diagonal[i])
 		}
 	}
-	for n, v := range g.values {
-		if k.wide {
-			s.wide = append(s.wide, g.columns[n])
-		} else {
-			s.columns = append(s.columns, uint32(g.columns[n]))
+	if k.wide {
+		s.wide = append(s.wide, g.columns...)
+	} else {
+		for _, column := range g.columns {
+			s.columns = append(s.columns, uint32(column))
 		}
+	}
+	for _, n := range g.codes {
+		k.recode(g.coder, n)
+	}
+	for _, v := range g.values {
 		k.put(v)
+	}
+}
+
+// recode stores a value of a coder's table.
+func (k *packer) recode(c *coder, n uint32) {
+	if k.code != nil && c.global[n] >= 0 {
+		k.s.codes = append(k.s.codes, uint16(c.global[n]))
+		return
+	}
+	k.put(c.table[n])
+	if k.code != nil {
+		c.global[n] = int32(k.s.codes[len(k.s.codes)-1])
 	}
 }
 
