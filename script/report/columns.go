@@ -1,6 +1,7 @@
 package report
 
 import (
+	"fmt"
 	"image/color"
 	"math"
 	"strconv"
@@ -73,31 +74,91 @@ func (c columns) draw(s sheet, y float64) {
 }
 
 // dash is the length of the dash that stands for a level.
-func (c columns) dash() float64 { return math.Min(0.66*c.pitch, 15) }
+func (c columns) dash() float64 { return math.Min(0.72*c.pitch, 15) }
 
 // drawCluster draws one dash for a level and as many short dashes side by side as
 // a degenerate level has members; if these are too short to be told apart, one
 // heavy dash. The number of members follows where there is room for it.
-func (c columns) drawCluster(s sheet, g cluster, y float64, ink color.Color, numbered bool) {
+func (c columns) drawCluster(s sheet, g cluster, y, thick float64, ink color.Color, numbered bool) {
 	x, w := c.at(g.column), c.dash()
-	s.dashes(x-w/2, y, w, g.count, ink)
+	s.dashes(x-w/2, y, w, thick, g.count, ink)
 	if numbered {
 		s.text(strconv.Itoa(g.count), countSize, x+w/2+0.8, y-capital*countSize/2, 0, ink)
 	}
 }
 
-// dashes divides a dash of width w into count parts.
-func (s sheet) dashes(x, y, w float64, count int, c color.Color) {
-	const thick, heavy, pause, shortest = 1.1, 2.2, 1.0, 1.2
-	part := (w - pause*float64(count-1)) / float64(count)
-	if count > 1 && part < shortest {
-		s.line(x, y, x+w, y, heavy, c)
+// Dashes of degenerate levels: the distance between the parts, and the length
+// below which they would not be told apart.
+const (
+	partPause    = 0.8
+	shortestPart = 1.0
+)
+
+func parts(w float64, count int) float64 { return (w - partPause*float64(count-1)) / float64(count) }
+
+// dashes divides a dash of width w into count parts, or makes it heavy if these
+// were too short.
+func (s sheet) dashes(x, y, w, thick float64, count int, c color.Color) {
+	part := parts(w, count)
+	if count > 1 && part < shortestPart {
+		s.line(x, y, x+w, y, 2.2*thick, c)
 		return
 	}
 	for i := range count {
-		from := x + float64(i)*(part+pause)
+		from := x + float64(i)*(part+partPause)
 		s.line(from, y, from+part, y, thick, c)
 	}
+}
+
+// key explains the dashes of degenerate levels that occur among the groups.
+func (c columns) key(groups []cluster, tolerance float64, unit string) []entry {
+	divided, heavy, least := false, false, 2
+	for parts(c.dash(), least) >= shortestPart {
+		least++
+	}
+	for _, g := range groups {
+		divided = divided || g.count > 1 && g.count < least
+		heavy = heavy || g.count >= least
+	}
+	text := "degenerate"
+	if tolerance > 0 {
+		text += " within " + quantity(tolerance, unit)
+	}
+	var key []entry
+	if divided {
+		key = append(key, dashEntry(text, 2, ink))
+	}
+	if heavy {
+		if !divided {
+			text = fmt.Sprintf("%d or more %s", least, text)
+		} else {
+			text = fmt.Sprintf("%d or more", least)
+		}
+		key = append(key, dashEntry(text, 100, ink))
+	}
+	return key
+}
+
+// dashWidth is the thickness of a dash where there is room.
+const dashWidth = 1.1
+
+// thickness of the dashes in the manifold, or of the others: half the mean
+// distance of those in the fullest column, if that is less than dashWidth.
+func (c columns) thickness(groups []cluster, heights []float64, inManifold bool) float64 {
+	counts, most := make([]int, len(c.labels)), 0
+	low, high := math.Inf(1), math.Inf(-1)
+	for i, g := range groups {
+		if g.manifold != inManifold {
+			continue
+		}
+		counts[g.column]++
+		most = max(most, counts[g.column])
+		low, high = math.Min(low, heights[i]), math.Max(high, heights[i])
+	}
+	if most < 4 {
+		return dashWidth
+	}
+	return math.Max(0.3, math.Min(dashWidth, (high-low)/2/float64(most)))
 }
 
 // numbered says which clusters have room for their number: it must fit between

@@ -16,7 +16,7 @@ func (p *panel) cutLines(points []vg.Point) [][]vg.Point {
 	return w.ClipLinesXY(points)
 }
 
-// cutArea returns the part of a convex polygon inside the plotting area.
+// cutArea returns the part of a polygon inside the plotting area.
 func (p *panel) cutArea(points []vg.Point) []vg.Point {
 	w := p.window()
 	return w.ClipPolygonXY(points)

@@ -42,8 +42,8 @@
 // counted in the key, and what does not fit is an error that says so.
 //
 // Ticks with many equal leading digits are shortened: the title then reads
-// "Energy − 24.43 (10^{−3} V)", that is, the number at a tick is the energy less
-// 24.43 V in units of 10⁻³ V.
+// "Energy + 24.43 V (10^{−3} V)", that is, the number at a tick is the sum of the
+// energy and 24.43 V in units of 10⁻³ V.
 //
 // Errors wrap [ErrData] (numbers, labels), [ErrFormat] (ending) or [ErrSize] (it
 // does not fit the page), or are those of the file system.

@@ -13,7 +13,7 @@ import (
 // dash for each level, with a broken line in the gap and above each sector the
 // number of levels found below the line and, after a stroke, the expected one
 // (after H. Li and F. D. M. Haldane, Phys. Rev. Lett. 101, 010504 (2008)). Numbers
-// that differ are printed in colour and underlined.
+// that differ are printed in colour, with a mark below.
 type EntanglementSpectrum struct {
 	Page Page
 	// Sectors as in SectorSpectrum; Predicted is not used here and must be 0.
@@ -74,7 +74,8 @@ func (f EntanglementSpectrum) plan() (*panel, func(), error) {
 		page: f.Page.filled(), name: "Entanglement level against momentum",
 		names: names, xAxis: Axis{Title: momentum},
 		yAxis: axis, yRange: [2]float64{lo, hi},
-		key: f.key(all, groups, count, counts, beyond(groups, axis)), strip: counts.height(),
+		key:   func(c columns) []entry { return f.key(c, all, groups, count, counts, beyond(groups, axis)) },
+		strip: counts.height,
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
@@ -129,52 +130,64 @@ func (f EntanglementSpectrum) count(all []placed, sectors, below int) counting {
 	return c
 }
 
-// Counts are printed upright from 6 points down to 4.5.
+// Counts are printed from 6 points down to 4.5.
 const leastCount = 4.5
 
-func (c counting) height() float64 {
-	if !c.shown {
-		return 0
-	}
+func (c counting) longest(size float64) float64 {
 	longest := 0.0
 	for _, label := range c.labels {
-		longest = math.Max(longest, width(label, countSize))
+		longest = math.Max(longest, width(label, size))
 	}
-	return longest + 4
+	return longest
 }
 
-// size of the numbers at a distance of pitch between sectors.
-func (c counting) size(pitch float64) float64 { return math.Min(countSize, pitch/0.88) }
+// upright reports whether the counts do not fit side by side.
+func (c counting) upright(cols columns) bool { return c.longest(countSize)+clearance > cols.pitch }
+
+// countLift is the room below the counts, where the mark of a wrong one stands.
+const countLift = 5.5
+
+func (c counting) height(cols columns) float64 {
+	switch {
+	case !c.shown:
+		return 0
+	case c.upright(cols):
+		return c.longest(c.size(cols)) + countLift + 1
+	}
+	return capital*countSize + countLift + 1
+}
+
+func (c counting) size(cols columns) float64 {
+	if !c.upright(cols) {
+		return countSize
+	}
+	return math.Min(countSize, cols.pitch)
+}
 
 func (c counting) fits(p *panel) error {
-	if c.shown && c.size(p.columns.pitch) < leastCount {
-		need := leastCount * 0.88 * float64(len(c.labels)) / perMillimetre
+	if c.shown && c.size(p.columns) < leastCount {
+		need := leastCount * float64(len(c.labels)) / perMillimetre
 		have := (p.right - p.left) / perMillimetre
 		return fmt.Errorf("%w: the counts of %d sectors need %.0f mm and have %.0f mm; widen the page by %.0f mm",
-			ErrSize, len(c.labels), need, have, math.Ceil(need-have))
+			ErrSize, len(c.labels), math.Ceil(need), have, math.Ceil(need-have))
 	}
 	return nil
 }
 
-func (f EntanglementSpectrum) key(all []placed, groups []cluster, below int, c counting, hidden int) []entry {
+func (f EntanglementSpectrum) key(cols columns, all []placed, groups []cluster, below int, c counting, hidden int) []entry {
 	var key []entry
 	if c.shown {
-		what := "levels below the gap "
+		what := "below the gap: "
 		if f.Expected != nil {
-			what = "levels below the gap, found/expected "
+			what = "below the gap, found/expected: "
 		}
 		key = append(key, dashEntry(what+c.total, 1, blue), entry{
 			"gap " + quantity(all[below].value-all[below-1].value, f.Xi.Unit),
 			func(s sheet, x, y, w float64) { s.broken(x, y, x+w, y, 0.8, vermilion) },
 		})
 	}
-	for _, g := range groups {
-		if g.count > 1 {
-			key = append(key, dashEntry(degenerate(f.Tolerance, f.Xi.Unit), 2, ink))
-			break
-		}
-	}
-	return append(key, hiddenEntry(hidden)...)
+	key = append(key, cols.key(groups, f.Tolerance, f.Xi.Unit)...)
+	return append(key, hiddenEntry(hidden, "level")...)
 }
 
 func (f EntanglementSpectrum) paint(p *panel, all []placed, groups []cluster, below int, c counting) {
@@ -189,15 +202,19 @@ func (f EntanglementSpectrum) paint(p *panel, all []placed, groups []cluster, be
 	p.drawClusters(groups)
 }
 
+// draw prints the counts, and below each wrong one a mark.
 func (c counting) draw(p *panel) {
-	size := c.size(p.columns.pitch)
+	size, base := c.size(p.columns), p.top+countLift
 	for i, label := range c.labels {
 		x, tone := p.columns.at(i), ink
 		if c.wrong[i] {
 			tone = vermilion
-			edge := x + capital*size/2 + 0.9
-			p.line(edge, p.top+3, edge, p.top+3+width(label, size), 0.6, tone)
+			p.area(tone, at(x-1.8, base-1.2), at(x+1.8, base-1.2), at(x, base-4.2))
 		}
-		p.upright(label, size, x+capital*size/2, p.top+3, 0, tone)
+		if c.upright(p.columns) {
+			p.sheet.upright(label, size, x+capital*size/2, base, 0, tone)
+			continue
+		}
+		p.text(label, size, x, base, 0.5, tone)
 	}
 }

@@ -51,7 +51,7 @@ func (f EntropyProfile) plan() (*panel, func(), error) {
 	p, err := frame{
 		page: f.Page.filled(), name: "Entropy against the cut",
 		xAxis: f.Cut, xRange: [2]float64{xLo, xHi}, whole: true,
-		yAxis: f.Entropy, yRange: [2]float64{yLo, yHi}, key: f.key(hidden),
+		yAxis: f.Entropy, yRange: [2]float64{yLo, yHi}, key: func(columns) []entry { return f.key(hidden) },
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
@@ -92,6 +92,9 @@ func (c EntropyCurve) check(i int) error {
 		if err := checkNumber(fmt.Sprintf("entropy %d of curve %d %s", j, i, c.Name), v); err != nil {
 			return err
 		}
+		if err := checkNumber(fmt.Sprintf("cut %d of curve %d %s", j, i, c.Name), float64(c.Sites[j])); err != nil {
+			return err
+		}
 		if c.Sites[j] < 0 || j > 0 && c.Sites[j] <= c.Sites[j-1] {
 			return fmt.Errorf("%w: cut %d of curve %d %s has %d sites in part A; give ascending numbers, none negative",
 				ErrData, j, i, c.Name, c.Sites[j])
@@ -128,13 +131,7 @@ func (f EntropyProfile) key(hidden int) []entry {
 			s.marker(i, x+w/2, y, 2, series(i))
 		}})
 	}
-	switch {
-	case hidden == 1:
-		key = append(key, entry{text: "1 point beyond the axes"})
-	case hidden > 1:
-		key = append(key, entry{text: fmt.Sprintf("%d points beyond the axes", hidden)})
-	}
-	return key
+	return append(key, hiddenEntry(hidden, "point")...)
 }
 
 func (f EntropyProfile) paint(p *panel) {

@@ -32,8 +32,8 @@ type frame struct {
 	whole  bool // ticks at whole numbers only
 	yAxis  Axis
 	yRange [2]float64
-	key    []entry
-	strip  float64 // height kept free above the plotting area
+	key    func(columns) []entry
+	strip  func(columns) float64 // height kept free above the plotting area; may be nil
 }
 
 // panel is a frame with all places fixed.
@@ -57,7 +57,7 @@ func (f frame) arrange() (*panel, error) {
 	if p.note, ok = lines(f.page.Note, noteSize, p.width-2*border); !ok {
 		return nil, fmt.Errorf("%w: a word of the note is longer than the page is wide; break it or widen the page", ErrSize)
 	}
-	p.left, p.right = border+titleSize+6+2*tickSize, p.width-border-2
+	p.left, p.right = border+titleSize*(1+descenders), p.width-border-2
 	for range 6 {
 		if err := p.divide(); err != nil {
 			return nil, err
@@ -86,11 +86,11 @@ func (p *panel) divide() error {
 		p.x = numbersBelow(p.frame, p.left, p.right)
 	}
 	var err error
-	if p.rows, err = rowsOf(p.key, p.width-border-p.left); err != nil {
+	if p.rows, err = rowsOf(p.key(p.columns), p.width-2*border); err != nil {
 		return err
 	}
 	p.bottom = border + p.noteHeight() + titleSize*(1+descenders) + labelGap + depth + labelGap + tickLength
-	p.top = p.height - border - p.titleHeight() - p.keyHeight() - p.strip
+	p.top = p.height - border - p.titleHeight() - p.keyHeight() - p.stripHeight()
 	if p.top-p.bottom < leastSide {
 		return fmt.Errorf("%w: %.0f mm are left for the height of the plot; %s", ErrSize, (p.top-p.bottom)/perMillimetre, useful)
 	}
@@ -100,18 +100,27 @@ func (p *panel) divide() error {
 
 // numbersBelow takes as many ticks as have room for their labels.
 func numbersBelow(f frame, from, to float64) scale {
-	apart := 24.0
-	for {
+	for apart := 24.0; ; apart *= 1.25 {
 		s := newScale(f.xAxis, f.xRange[0], f.xRange[1], from, to, apart, f.whole)
-		widest := 0.0
-		for _, t := range s.ticks {
-			widest = math.Max(widest, width(t.label, tickSize))
-		}
-		if len(s.ticks) < 3 || s.at(s.ticks[1].value)-s.at(s.ticks[0].value) >= widest+clearance || apart > to-from {
+		kept := s.apart()
+		if len(kept) == len(s.ticks) || apart > to-from {
+			s.ticks = kept
 			return s
 		}
-		apart *= 1.25
 	}
+}
+
+// apart returns the ticks whose labels do not touch the one before.
+func (s scale) apart() []tick {
+	var kept []tick
+	end := math.Inf(-1)
+	for _, t := range s.ticks {
+		half := width(t.label, tickSize) / 2
+		if x := s.at(t.value); x-half >= end+clearance {
+			kept, end = append(kept, t), x+half
+		}
+	}
+	return kept
 }
 
 func (p *panel) noteHeight() float64 {
@@ -133,6 +142,13 @@ func (p *panel) keyHeight() float64 {
 		return capital * tickSize / 2
 	}
 	return float64(len(p.rows))*keyRow + 3
+}
+
+func (p *panel) stripHeight() float64 {
+	if p.strip == nil {
+		return 0
+	}
+	return p.strip(p.columns)
 }
 
 func (p *panel) widestTick() float64 {
@@ -245,7 +261,7 @@ func (p *panel) titles() {
 	if p.page.Title != "" {
 		p.text(p.page.Title, fitted(p.page.Title, p.width-2*border), border, top-capital*titleSize-1, 0, ink)
 	}
-	p.drawKey(p.rows, p.left, top-p.titleHeight()-1)
+	p.drawKey(p.rows, border, top-p.titleHeight()-1)
 	for i, line := range p.note {
 		base := border + float64(len(p.note)-1-i)*noteSize*1.2 + descenders*noteSize
 		p.text(line, noteSize, border, base, 0, muted)

@@ -11,7 +11,7 @@ import (
 const BelowLargestGap = -1
 
 // MostMagnitude is the largest number, in magnitude, that a figure draws.
-const MostMagnitude = 1e100
+const MostMagnitude = 1e15
 
 // level of one sector.
 type placed struct {

@@ -113,9 +113,14 @@ func (a Axis) check(name string) error {
 	if !a.given() {
 		return nil
 	}
-	if !finite(a.Min) || !finite(a.Max) || !(a.Min < a.Max) || !finite(a.Max-a.Min) {
+	if !finite(a.Min) || !finite(a.Max) || !(a.Min < a.Max) {
 		return fmt.Errorf("%w: the %s axis runs from %v to %v; give two finite numbers in ascending order, or 0 and 0 for the range of the data",
 			ErrData, name, a.Min, a.Max)
+	}
+	for _, end := range []float64{a.Min, a.Max} {
+		if err := checkNumber("an end of the "+name+" axis", end); err != nil {
+			return err
+		}
 	}
 	if level(a.Min, a.Max) {
 		return fmt.Errorf("%w: the %s axis runs from %v to %v, too close together to draw; widen it",

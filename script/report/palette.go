@@ -32,8 +32,8 @@ func series(i int) color.RGBA {
 	return colours[i%len(colours)]
 }
 
-// over returns the colour seen where two tints overlap on white.
-func over(a, b color.RGBA) color.RGBA {
-	mix := func(x, y uint8) uint8 { return uint8(int(x) * int(y) / 255) }
-	return color.RGBA{mix(a.R, b.R), mix(a.G, b.G), mix(a.B, b.B), 255}
+// overlap is the tint where two tints meet, half way between them.
+func overlap(a, b color.RGBA) color.RGBA {
+	mean := func(x, y uint8) uint8 { return uint8((int(x) + int(y)) / 2) }
+	return color.RGBA{mean(a.R, b.R), mean(a.G, b.G), mean(a.B, b.B), 255}
 }

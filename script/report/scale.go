@@ -46,12 +46,25 @@ func span(a Axis, lo, hi, margin float64) (float64, float64) {
 }
 
 // newScale makes the scale of an axis from min to max, drawn between two places
-// on the page, with ticks at least apart points from each other, at whole numbers
-// only if asked.
+// on the page, with ticks at least apart points from each other, or closer if else
+// there were less than two; at whole numbers only if asked.
 func newScale(a Axis, min, max, from, to, apart float64, whole bool) scale {
 	s := scale{min: min, max: max, from: from, to: to}
-	most := math.Max(2, math.Abs(to-from)/apart)
-	digit, exponent := step((max-min)/most, whole)
+	raw := (max - min) / math.Max(2, math.Abs(to-from)/apart)
+	digit, exponent := step(raw, whole)
+	first := s.mark(digit, exponent)
+	for len(s.ticks) < 2 && raw > 0 && !(whole && digit == 1 && exponent == 0) {
+		raw /= 2
+		digit, exponent = step(raw, whole)
+		first = s.mark(digit, exponent)
+	}
+	s.label(a, digit, exponent, first)
+	return s
+}
+
+// mark puts ticks at the multiples of digit·10^exponent and returns the first
+// multiple.
+func (s *scale) mark(digit float64, exponent int) (first float64) {
 	unit := math.Pow(10, math.Abs(float64(exponent)))
 	value := func(k float64) float64 {
 		if exponent < 0 {
@@ -59,13 +72,13 @@ func newScale(a Axis, min, max, from, to, apart float64, whole bool) scale {
 		}
 		return k * digit * unit
 	}
-	first := math.Ceil(min / value(1) * (1 - 1e-12*sign(min)))
-	last := math.Floor(max / value(1) * (1 + 1e-12*sign(max)))
+	s.ticks = nil
+	first = math.Ceil(s.min / value(1) * (1 - 1e-12*sign(s.min)))
+	last := math.Floor(s.max / value(1) * (1 + 1e-12*sign(s.max)))
 	for k := first; k <= last; k++ {
 		s.ticks = append(s.ticks, tick{value: value(k)})
 	}
-	s.label(a, digit, exponent, first)
-	return s
+	return first
 }
 
 func sign(v float64) float64 {
@@ -131,6 +144,9 @@ func exponentOf(s *scale, digit float64, exponent int, first float64) int {
 
 func title(a Axis, base string, shifted float64, power int) string {
 	text := a.Title
+	if shifted != 0 && a.Unit != "" {
+		base += " " + a.Unit
+	}
 	switch {
 	case shifted > 0:
 		text += " − " + base

@@ -84,7 +84,7 @@ func (f SectorSpectrum) plan() (*panel, func(), error) {
 		page: f.Page.filled(), name: "Energy against momentum sector",
 		names: names, xAxis: Axis{Title: f.momentum()},
 		yAxis: axis, yRange: [2]float64{lo, hi},
-		key: f.key(groups, count, gap, beyond(groups, axis)),
+		key: func(c columns) []entry { return f.key(c, groups, count, gap, beyond(groups, axis)) },
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
@@ -176,10 +176,10 @@ func (f SectorSpectrum) gap(all []placed, count int) (*[2]float64, error) {
 	return &[2]float64{all[count-1].value, all[count].value}, nil
 }
 
-func (f SectorSpectrum) key(groups []cluster, count int, gap *[2]float64, hidden int) []entry {
+func (f SectorSpectrum) key(c columns, groups []cluster, count int, gap *[2]float64, hidden int) []entry {
 	var key []entry
 	if count > 0 {
-		key = append(key, dashEntry(fmt.Sprintf("lowest %d levels", count), 1, blue), dashEntry("other levels", 1, muted))
+		key = append(key, dashEntry(lowest(count), 1, blue), dashEntry("other levels", 1, muted))
 	}
 	if gap != nil {
 		key = append(key, tintEntry("gap "+quantity(gap[1]-gap[0], f.Energy.Unit), gapTint))
@@ -189,22 +189,10 @@ func (f SectorSpectrum) key(groups []cluster, count int, gap *[2]float64, hidden
 		predicted, total = predicted || s.Predicted > 0, total+s.Predicted
 	}
 	if predicted {
-		key = append(key, tintEntry(fmt.Sprintf("predicted sectors (%d levels)", total), predictedTint))
+		key = append(key, tintEntry("predicted: "+counted(total, "level"), predictedTint))
 	}
-	for _, g := range groups {
-		if g.count > 1 {
-			key = append(key, dashEntry(degenerate(f.Tolerance, f.Energy.Unit), 2, ink))
-			break
-		}
-	}
-	return append(key, hiddenEntry(hidden)...)
-}
-
-func degenerate(tolerance float64, unit string) string {
-	if tolerance == 0 {
-		return "degenerate"
-	}
-	return "degenerate within " + quantity(tolerance, unit)
+	key = append(key, c.key(groups, f.Tolerance, f.Energy.Unit)...)
+	return append(key, hiddenEntry(hidden, "level")...)
 }
 
 // quantity writes a number with its unit.
@@ -216,21 +204,34 @@ func quantity(v float64, unit string) string {
 }
 
 func dashEntry(text string, parts int, c color.Color) entry {
-	return entry{text, func(s sheet, x, y, w float64) { s.dashes(x+1, y, w-2, parts, c) }}
+	return entry{text, func(s sheet, x, y, w float64) { s.dashes(x+1, y, w-2, dashWidth, parts, c) }}
 }
 
 func tintEntry(text string, c color.Color) entry {
 	return entry{text, func(s sheet, x, y, w float64) { s.box(x, y-3, x+w, y+3, c) }}
 }
 
-func hiddenEntry(hidden int) []entry {
-	switch hidden {
-	case 0:
+// hiddenEntry says how many levels or points the axis does not reach.
+func hiddenEntry(n int, what string) []entry {
+	if n == 0 {
 		return nil
-	case 1:
-		return []entry{{text: "1 level beyond the axis"}}
 	}
-	return []entry{{text: fmt.Sprintf("%d levels beyond the axis", hidden)}}
+	return []entry{{text: counted(n, what) + " beyond the axis"}}
+}
+
+// counted writes a number of things, one or many.
+func counted(n int, what string) string {
+	if n == 1 {
+		return "1 " + what
+	}
+	return strconv.Itoa(n) + " " + what + "s"
+}
+
+func lowest(n int) string {
+	if n == 1 {
+		return "lowest level"
+	}
+	return "lowest " + counted(n, "level")
 }
 
 func (f SectorSpectrum) paint(p *panel, groups []cluster, gap *[2]float64) {
@@ -254,7 +255,7 @@ func (f SectorSpectrum) shade(p *panel, gap *[2]float64) {
 		x := p.columns.at(i)
 		p.box(x-half, p.bottom, x+half, p.top, predictedTint)
 		if gap != nil {
-			p.box(x-half, low, x+half, high, over(predictedTint, gapTint))
+			p.box(x-half, low, x+half, high, overlap(predictedTint, gapTint))
 		}
 	}
 }
@@ -267,13 +268,13 @@ func (p *panel) drawClusters(groups []cluster) {
 	}
 	numbered := p.columns.numbered(groups, heights)
 	for _, inManifold := range []bool{false, true} {
-		c := muted
+		c, thick := muted, p.columns.thickness(groups, heights, inManifold)
 		if inManifold {
 			c = blue
 		}
 		for i, g := range groups {
 			if g.manifold == inManifold && p.yAxis.holds(g.value) {
-				p.columns.drawCluster(p.sheet, g, heights[i], c, numbered[i])
+				p.columns.drawCluster(p.sheet, g, heights[i], thick, c, numbered[i])
 			}
 		}
 	}

@@ -60,12 +60,9 @@ func (f SpectralFlow) Write(w io.Writer, format string) error {
 type flow struct {
 	SpectralFlow
 	sorted [][]float64 // Levels in ascending order
-	edges  []gapEdges  // nil without a shaded gap
-	beyond int         // levels outside the axes
+	gap    []gapNode   // in ascending flux; nil without a shaded gap
+	beyond int         // points outside the axes
 }
-
-// gapEdges are the ends of the gap at one flux.
-type gapEdges struct{ below, above float64 }
 
 func (f SpectralFlow) plan() (*panel, func(), error) {
 	if err := f.check(); err != nil {
@@ -91,7 +88,7 @@ func (f SpectralFlow) plan() (*panel, func(), error) {
 	p, err := frame{
 		page: f.Page.filled(), name: "Levels against flux",
 		xAxis: f.FluxAxis, xRange: [2]float64{xLo, xHi},
-		yAxis: f.Energy, yRange: [2]float64{yLo, yHi}, key: d.key(),
+		yAxis: f.Energy, yRange: [2]float64{yLo, yHi}, key: func(columns) []entry { return d.key() },
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
@@ -169,34 +166,6 @@ func (f SpectralFlow) checkFlows() error {
 	return nil
 }
 
-// findGap fills edges.
-func (d *flow) findGap() error {
-	if !d.ShadeGap {
-		return nil
-	}
-	for i := range d.Flux {
-		e := gapEdges{math.Inf(-1), math.Inf(1)}
-		if d.sorted != nil {
-			if d.Manifold > 0 && d.Manifold < len(d.sorted[i]) {
-				e = gapEdges{d.sorted[i][d.Manifold-1], d.sorted[i][d.Manifold]}
-			}
-		} else {
-			for _, l := range d.Flows {
-				if l.Manifold {
-					e.below = math.Max(e.below, l.Energies[i])
-				} else {
-					e.above = math.Min(e.above, l.Energies[i])
-				}
-			}
-		}
-		if !finite(e.below) || !finite(e.above) {
-			return fmt.Errorf("%w: no gap to shade at flux %v; give levels inside and outside the manifold at each flux", ErrData, d.Flux[i])
-		}
-		d.edges = append(d.edges, e)
-	}
-	return nil
-}
-
 func (d *flow) onPage(flux, energy float64) bool {
 	return d.FluxAxis.holds(flux) && d.Energy.holds(energy)
 }
@@ -252,25 +221,25 @@ func (d *flow) colour(i int) color.RGBA {
 func (d *flow) key() []entry {
 	var key []entry
 	if d.Manifold > 0 {
-		key = append(key, pointEntry(fmt.Sprintf("lowest %d levels", d.Manifold), 0, blue), pointEntry("other levels", 0, muted))
+		key = append(key, pointEntry(lowest(d.Manifold), 0, blue), pointEntry("other levels", 0, muted))
 	}
 	for i, l := range d.Flows {
 		if l.Name != "" {
 			key = append(key, lineEntry(l.Name, d.colour(i), d.thick(i)))
 		}
 	}
-	if d.edges != nil {
+	if d.gap != nil {
 		smallest := math.Inf(1)
-		for _, e := range d.edges {
-			smallest = math.Min(smallest, e.above-e.below)
+		for _, n := range d.gap {
+			smallest = math.Min(smallest, n.width())
 		}
 		text := "no gap at some flux"
 		if smallest > 0 {
-			text = "gap, at least " + quantity(smallest, d.Energy.Unit)
+			text = "smallest gap " + quantity(smallest, d.Energy.Unit)
 		}
 		key = append(key, tintEntry(text, gapTint))
 	}
-	return append(key, hiddenEntry(d.beyond)...)
+	return append(key, hiddenEntry(d.beyond, "point")...)
 }
 
 func pointEntry(text string, mark int, c color.Color) entry {
@@ -298,36 +267,6 @@ func (d *flow) paint(p *panel) {
 			}
 		}
 		d.points(p, inManifold)
-	}
-}
-
-// shade fills the gap from one flux to the next. Its ends are straight lines, and
-// where these cross the filling ends at the crossing.
-func (d *flow) shade(p *panel) {
-	for i := 1; i < len(d.edges); i++ {
-		a, b := d.edges[i-1], d.edges[i]
-		x0, x1 := d.Flux[i-1], d.Flux[i]
-		open, shut := a.above-a.below, b.above-b.below
-		if open <= 0 && shut <= 0 {
-			continue
-		}
-		t0, t1 := 0.0, 1.0
-		if open < 0 {
-			t0 = open / (open - shut)
-		}
-		if shut < 0 {
-			t1 = open / (open - shut)
-		}
-		mix := func(u, v, t float64) float64 { return u + t*(v-u) }
-		region := []vg.Point{
-			at(p.x.at(mix(x0, x1, t0)), p.y.at(mix(a.below, b.below, t0))),
-			at(p.x.at(mix(x0, x1, t1)), p.y.at(mix(a.below, b.below, t1))),
-			at(p.x.at(mix(x0, x1, t1)), p.y.at(mix(a.above, b.above, t1))),
-			at(p.x.at(mix(x0, x1, t0)), p.y.at(mix(a.above, b.above, t0))),
-		}
-		if cut := p.cutArea(region); len(cut) > 2 {
-			p.area(gapTint, cut...)
-		}
 	}
 }
 

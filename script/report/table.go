@@ -209,7 +209,7 @@ func (t Table) formatted() ([][]string, error) {
 				line[j] = shortest(cell)
 			default:
 				line[j] = fmt.Sprintf(c.Format, cell)
-				if strings.Contains(line[j], "%!") {
+				if _, word := cell.(string); !word && strings.Contains(line[j], "%!") {
 					return nil, fmt.Errorf("%w: row %d, column %d %s: the format %q does not fit the cell %v", ErrData, i, j, c.Title, c.Format, cell)
 				}
 				if err := checkLine(fmt.Sprintf("cell of row %d, column %d", i, j), line[j]); err != nil {
