@@ -6,18 +6,24 @@ import (
 	"ketloom/script/report"
 )
 
+// page returns the size and the note of a figure of this study.
+func (s settings) page() report.Page {
+	return report.Page{
+		Width: 120, Height: 80,
+		Note: fmt.Sprintf("%s, %d fermions on %d × %d cells, V = %g", s.model, s.particles, s.lx, s.ly, s.repulsion),
+	}
+}
+
 // drawSpectrum draws energy against momentum sector.
 func drawSpectrum(s settings, sectors []sector, m manifold) error {
 	figure := report.SectorSpectrum{
-		Title:  fmt.Sprintf("%s, %d fermions on %d×%d cells", s.model, s.particles, s.lx, s.ly),
-		XTitle: "Momentum sector (kx, ky)",
-		YTitle: "Energy (V)",
+		Page:     s.page(),
+		Energy:   report.Axis{Unit: "V"},
+		Manifold: m.below, ShadeGap: m.below > 0,
+		Tolerance: 1e-8,
 	}
-	if m.below > 0 {
-		figure.GapLow, figure.GapHigh = m.top, m.top+m.gap
-	}
-	for i, sec := range sectors {
-		row := report.SectorLevels{Label: fmt.Sprintf("(%d,%d)", sec.kx, sec.ky), Below: m.counts[i]}
+	for _, sec := range sectors {
+		row := report.Sector{Label: fmt.Sprintf("(%d,%d)", sec.kx, sec.ky)}
 		for _, l := range sec.result.Levels {
 			row.Levels = append(row.Levels, l.Energy)
 		}
@@ -28,15 +34,19 @@ func drawSpectrum(s settings, sectors []sector, m manifold) error {
 		}
 		figure.Sectors = append(figure.Sectors, row)
 	}
-	return figure.Save(s.path("spectrum.svg"))
+	return figure.Save(s.path("spectrum." + s.format))
 }
 
 // drawFlow draws energy against flux.
 func drawFlow(s settings, points []flowPoint) error {
 	figure := report.SpectralFlow{
-		Title:  fmt.Sprintf("%s, %d fermions on %d×%d cells", s.model, s.particles, s.lx, s.ly),
-		XTitle: "Flux through " + s.direction + " (flux quanta)",
-		YTitle: "Energy (V)",
+		Page:     s.page(),
+		Energy:   report.Axis{Unit: "V"},
+		FluxAxis: report.Axis{Title: "Flux through " + s.direction, Unit: "flux quanta"},
+		ShadeGap: true,
+	}
+	for step := 0; step <= s.steps; step++ {
+		figure.Flux = append(figure.Flux, float64(step)/float64(s.steps))
 	}
 	lines := map[string]int{}
 	for _, p := range points {
@@ -44,17 +54,16 @@ func drawFlow(s settings, points []flowPoint) error {
 			name := fmt.Sprintf("(%d,%d) %d", p.kx, p.ky, j)
 			at, known := lines[name]
 			if !known {
-				at = len(figure.Lines)
+				at = len(figure.Flows)
 				lines[name] = at
-				line := report.FlowLine{Manifold: j < p.manifold}
+				line := report.Flow{Manifold: j < p.manifold}
 				if line.Manifold {
-					line.Label = fmt.Sprintf("(%d,%d)", p.kx, p.ky)
+					line.Name = fmt.Sprintf("(%d,%d)", p.kx, p.ky)
 				}
-				figure.Lines = append(figure.Lines, line)
+				figure.Flows = append(figure.Flows, line)
 			}
-			figure.Lines[at].Flux = append(figure.Lines[at].Flux, p.flux)
-			figure.Lines[at].Values = append(figure.Lines[at].Values, e)
+			figure.Flows[at].Energies = append(figure.Flows[at].Energies, e)
 		}
 	}
-	return figure.Save(s.path("flow.svg"))
+	return figure.Save(s.path("flow." + s.format))
 }

@@ -41,6 +41,7 @@ type settings struct {
 	everywhere bool
 	seed       uint64
 	out        string
+	format     string
 	json       string
 }
 
@@ -52,12 +53,13 @@ func main() {
 	flag.IntVar(&s.particles, "particles", 8, "number of fermions in the band")
 	flag.Float64Var(&s.repulsion, "repulsion", 1, "nearest-neighbour repulsion V, the unit of energy if 1")
 	flag.BoolVar(&s.dispersion, "dispersion", false, "keep the energies of the band instead of flattening it")
-	flag.IntVar(&s.levels, "levels", 4, "levels to compute in each sector")
+	flag.IntVar(&s.levels, "levels", 3, "levels to compute in each sector; more where the gap asks for it")
 	flag.IntVar(&s.steps, "flux", 10, "steps in which one flux quantum is threaded, 0 for none")
 	flag.StringVar(&s.direction, "direction", "x", "direction that the flux twists: x or y")
 	flag.BoolVar(&s.everywhere, "everywhere", false, "thread flux in all sectors, not only in those of the ground states")
 	flag.Uint64Var(&s.seed, "seed", 1, "seed of the start vectors")
 	flag.StringVar(&s.out, "out", "chernband-results", "folder for figures and archive")
+	flag.StringVar(&s.format, "format", "svg", "format of the figures: svg, png or pdf")
 	flag.StringVar(&s.json, "json", "", "file for the results as JSON")
 	flag.Parse()
 
@@ -137,6 +139,8 @@ func (s settings) check() error {
 		return fmt.Errorf("-flux %d: give 0 (none) or a number of steps", s.steps)
 	case s.direction != "x" && s.direction != "y":
 		return fmt.Errorf("-direction %q: the directions are x and y", s.direction)
+	case s.format != "svg" && s.format != "png" && s.format != "pdf":
+		return fmt.Errorf("-format %q: the formats are svg, png and pdf", s.format)
 	case flag.NArg() > 0:
 		return fmt.Errorf("unexpected %q: all settings are flags, see -h", flag.Arg(0))
 	}

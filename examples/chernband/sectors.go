@@ -4,6 +4,8 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"math"
+	"sort"
 
 	"ketloom/basis"
 	"ketloom/lanczos"
@@ -51,7 +53,48 @@ func solveSectors(ctx context.Context, s settings, bands model.TightBinding, bar
 		}
 		bar.Report("sectors", int64(i+1), int64(len(sectors)), 0)
 	}
-	return sectors, nil
+	return sectors, reachGap(ctx, s, sectors)
+}
+
+// reachGap computes more levels in sectors whose levels all lie below the largest
+// gap of the levels found so far, until every sector reaches beyond it.
+func reachGap(ctx context.Context, s settings, sectors []sector) error {
+	for again := true; again; {
+		again = false
+		edge := lowerEdge(sectors)
+		for i, sec := range sectors {
+			found := sec.result.Levels
+			if len(found) == sec.basis.Len() || found[len(found)-1].Energy > edge {
+				continue
+			}
+			result, err := solve(ctx, s, sec, 2*len(found), sec.result.Vectors)
+			if err != nil {
+				return fmt.Errorf("sector (%d,%d): %w", sec.kx, sec.ky, err)
+			}
+			sectors[i].result = result
+			again = true
+		}
+	}
+	return nil
+}
+
+// lowerEdge returns the energy below the largest gap between neighbouring levels
+// of all sectors together.
+func lowerEdge(sectors []sector) float64 {
+	var all []float64
+	for _, sec := range sectors {
+		for _, l := range sec.result.Levels {
+			all = append(all, l.Energy)
+		}
+	}
+	sort.Float64s(all)
+	edge, gap := math.Inf(-1), 0.0
+	for i := 0; i+1 < len(all); i++ {
+		if d := all[i+1] - all[i]; d > gap {
+			edge, gap = all[i], d
+		}
+	}
+	return edge
 }
 
 // makeBases numbers the states of every sector; sectors without states are left

@@ -86,21 +86,22 @@ func (r results) print(s settings) {
 // draw saves the figure of levels by sector.
 func (r results) draw(s settings, cut *entangle.Spectrum) error {
 	figure := report.EntanglementSpectrum{
-		Title:  fmt.Sprintf("Particle entanglement, %d particles in the part", r.Part),
-		XTitle: "Momentum of the part (kx, ky)",
-		YTitle: "Entanglement level ξ",
-		GapLow: r.XiBelow, GapHigh: r.XiAbove,
+		Page: report.Page{
+			Width: 150, Height: 95,
+			Note: fmt.Sprintf("%d particles in the part; above: levels below the gap / expected", r.Part),
+		},
+		Below:    r.BelowGap,
+		Momentum: "Momentum of the part (k_{x}, k_{y})",
 	}
 	for i, sec := range r.Sectors {
-		figure.Sectors = append(figure.Sectors, report.EntanglementSector{
-			Label: fmt.Sprintf("(%d,%d)", sec.Momentum[0], sec.Momentum[1]),
-			Found: sec.BelowGap, Expected: sec.Expected,
-		})
+		row := report.Sector{Label: fmt.Sprintf("(%d,%d)", sec.Momentum[0], sec.Momentum[1])}
 		for _, l := range cut.Levels() {
 			if l.Block == i {
-				figure.Sectors[i].Levels = append(figure.Sectors[i].Levels, l.Xi)
+				row.Levels = append(row.Levels, l.Xi)
 			}
 		}
+		figure.Sectors = append(figure.Sectors, row)
+		figure.Expected = append(figure.Expected, sec.Expected)
 	}
 	if err := figure.Save(s.figure); err != nil {
 		return err
