@@ -62,6 +62,7 @@ func TestExamplesCompiledAndInterpreted(t *testing.T) {
 		binary := filepath.Join(binaries, c.example)
 		if _, err := os.Stat(binary); err != nil {
 			build := exec.Command(goTool, "build", "-o", binary, "./"+c.example)
+			build.Dir = here
 			if out, err := build.CombinedOutput(); err != nil {
 				t.Fatalf("building %s: %v\n%s", c.example, err, out)
 			}
