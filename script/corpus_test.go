@@ -11,7 +11,7 @@ import (
 )
 
 // corpus are the files of programs with the compiled program's output.
-var corpus = []string{"language.txt", "numbers.txt", "isolated.txt", "results.txt", "maps.txt", "captures.txt", "random.txt", "types.txt", "errors.txt", "ketloom.txt"}
+var corpus = []string{"language.txt", "numbers.txt", "isolated.txt", "results.txt", "maps.txt", "captures.txt", "random.txt", "types.txt", "errors.txt", "ketloom.txt", "wide.txt"}
 
 // interpret runs a script and returns its standard output.
 func interpret(t testing.TB, src string) (string, error) {

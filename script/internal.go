@@ -3,7 +3,6 @@ package script
 import (
 	"fmt"
 	"go/token"
-	"os"
 	"regexp"
 	"strconv"
 	"strings"
@@ -17,9 +16,6 @@ var place = regexp.MustCompile(`^(?:[^:\s]*:)?(\d+):\d+: `)
 // is a fault of the lowering; the script is refused with the line at which it
 // happened.
 func (s *source) internal(p *lower.Program, err error) error {
-	if dump := os.Getenv("KETLOOM_LOWERED"); dump != "" {
-		_ = os.WriteFile(dump, []byte(p.Source), 0o666) // for the developers of the lowering
-	}
 	text := err.Error()
 	message := fmt.Sprintf("this statement is not available in a script; write it in simpler steps (%s)", text)
 	if m := place.FindStringSubmatch(text); m != nil {

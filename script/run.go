@@ -50,22 +50,23 @@ func (o Options) filled() Options {
 
 // execute gives the lowered program to the interpreter.
 func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Program) error {
-	i := interp.New(interp.Options{Stdin: nothing{}, Stdout: io.Discard, Stderr: io.Discard})
-	if err := i.Use(interp.Exports{"h/h": p.Symbols}); err != nil {
-		return fmt.Errorf("script: %w", err)
-	}
-	prog, err := compile(i, p)
+	h, err := newHalter(p)
 	if err != nil {
 		return src.internal(p, err)
 	}
-	inner, stop := context.WithCancel(context.Background())
-	defer stop()
-	go watch(run, inner.Done())
+	prog, err := compile(h.interp, p.Source)
+	if err != nil {
+		return src.internal(p, err)
+	}
+	done := make(chan struct{})
+	defer close(done)
+	go watch(run, done)
 	failed := make(chan error, 1)
 	go func() {
-		_, err := i.ExecuteWithContext(inner, prog)
+		_, err := h.interp.Execute(prog)
 		failed <- err
 	}()
+	defer h.halt()
 	select {
 	case o := <-run.Ended():
 		return src.outcome(o.Code(), o.Panic())
@@ -77,13 +78,13 @@ func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Progra
 }
 
 // compile keeps a panic of the interpreter's compiler from the caller.
-func compile(i *interp.Interpreter, p *lower.Program) (prog *interp.Program, err error) {
+func compile(i *interp.Interpreter, text string) (prog *interp.Program, err error) {
 	defer func() {
 		if r := recover(); r != nil {
 			err = fmt.Errorf("%v", r)
 		}
 	}()
-	return i.Compile(p.Source)
+	return i.Compile(text)
 }
 
 // early is the result of an execution that ended before main was seen to end.
@@ -114,8 +115,3 @@ func (s *source) outcome(code int, t *machine.Thrown) error {
 	}
 	return nil
 }
-
-// nothing is an empty stream.
-type nothing struct{}
-
-func (nothing) Read([]byte) (int, error) { return 0, io.EOF }

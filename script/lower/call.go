@@ -21,7 +21,9 @@ func (f *fn) callValue(e *ast.CallExpr) late {
 
 // call makes a call and returns its results, each in a variable.
 func (f *fn) call(e *ast.CallExpr) []string {
+	mark := len(f.taken)
 	p := f.prepare(e)
+	f.release(mark) // the call is made now, and its arguments are not needed again
 	return p.emit()
 }
 

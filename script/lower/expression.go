@@ -119,7 +119,11 @@ func (f *fn) zero(t types.Type) string {
 			return "0"
 		}
 	}
-	form := f.text(t)
+	return f.zeroVariable(f.text(t))
+}
+
+// zeroVariable is a variable of the given form that stays zero.
+func (f *fn) zeroVariable(form string) string {
 	return f.c.once("zero "+form, func() string {
 		v := &variable{name: f.c.fresh("z"), form: form}
 		f.c.globals[types.NewVar(token.NoPos, nil, v.name, nil)] = v

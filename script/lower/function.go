@@ -301,9 +301,18 @@ func (f *fn) resultBoxes(s signature) {
 	}
 }
 
+// returns says that the last statement of the body is a return.
+func returns(body *ast.BlockStmt) bool {
+	if len(body.List) == 0 {
+		return false
+	}
+	_, ok := body.List[len(body.List)-1].(*ast.ReturnStmt)
+	return ok
+}
+
 // fallOff ends a function whose last statement may be reached.
 func (f *fn) fallOff(s signature) {
-	if len(f.results) > 0 {
+	if len(f.results) > 0 && !returns(s.body) {
 		f.line("%s", f.zeroReturn())
 	}
 }
@@ -313,7 +322,7 @@ func (f *fn) fallOff(s signature) {
 func (f *fn) zeroReturn() string {
 	var values []string
 	for _, t := range f.results {
-		values = append(values, f.hold(f.text(t)))
+		values = append(values, f.zeroVariable(f.text(t)))
 	}
 	return "return " + strings.Join(values, ", ")
 }

@@ -23,11 +23,12 @@ func (f *fn) takeLabel() string {
 	return l
 }
 
-// forStmt makes every loop from an endless one:
+// forStmt makes every loop of these:
 //
+//	for c { body; post }
 //	for { condition; if c { } else { break }; body; post }
 //
-// The body is a loop that runs once if it has to be left for the next turn.
+// The first serves where the condition needs no statements. The body is a loop that runs once if it has to be left for the next turn.
 func (f *fn) forStmt(s *ast.ForStmt) {
 	label := f.takeLabel()
 	f.line("{")
@@ -42,26 +43,38 @@ func (f *fn) forStmt(s *ast.ForStmt) {
 		}
 	}
 	hasPost := s.Post != nil || f.turnVars(s) != nil
-	f.loop(l, hasPost, s.Body, func() {
-		if s.Cond != nil {
-			f.pos = s.Cond.Pos()
-			mark := len(f.taken)
-			f.line("if %s { } else { break }", f.now(s.Cond))
-			f.release(mark)
+	f.loop(l, hasPost, s.Body, func() string {
+		if s.Cond == nil {
+			return ""
 		}
-	}, post)
+		f.pos = s.Cond.Pos()
+		return f.now(s.Cond)
+	}, func() {}, post)
 	f.line("}")
 }
 
-// loop emits an endless loop around head, body and post.
-func (f *fn) loop(l *loop, hasPost bool, body *ast.BlockStmt, head, post func()) {
+// loop emits a loop with a condition, or none if that is "", then head, body
+// and post.
+func (f *fn) loop(l *loop, hasPost bool, body *ast.BlockStmt, condition func() string, head, post func()) {
 	l.stop = f.c.fresh("stop")
 	once := continues(body, l.label, hasPost)
 	if once {
 		l.turn = f.c.fresh("turn")
 	}
 	text, _ := f.apart(func() string {
-		f.line("for {")
+		mark := len(f.taken)
+		before, c := f.apart(condition)
+		switch {
+		case before == "" && c != "":
+			f.line("for %s {", c)
+		default:
+			f.line("for {")
+			f.buf.WriteString(before)
+			if c != "" {
+				f.line("if %s { } else { break }", c)
+			}
+		}
+		f.release(mark)
 		head()
 		f.turn(l, once, body)
 		post()

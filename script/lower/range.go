@@ -81,8 +81,8 @@ func (f *fn) set(s *ast.RangeStmt, values ...typedValue) {
 func (f *fn) counted(s *ast.RangeStmt, l *loop, n, x string, elem types.Type) {
 	i := f.hold("int")
 	f.line("%s = 0", i)
-	f.loop(l, true, s.Body, func() {
-		f.line("if %s < %s { } else { break }", i, n)
+	below := func() string { return i + " < " + n }
+	f.loop(l, true, s.Body, below, func() {
 		values := []typedValue{{i, types.Typ[types.Int]}}
 		if !isBlank(s.Value) {
 			v := f.temp(f.text(elem))
@@ -109,8 +109,8 @@ func (f *fn) rangeInteger(s *ast.RangeStmt, l *loop, t types.Type) {
 	n, i := f.hold(form), f.hold(form)
 	f.line("%s = %s", n, f.orderAs(s.X, t)())
 	f.line("%s = 0", i)
-	f.loop(l, true, s.Body, func() {
-		f.line("if %s < %s { } else { break }", i, n)
+	below := func() string { return i + " < " + n }
+	f.loop(l, true, s.Body, below, func() {
 		f.set(s, typedValue{i, t})
 	}, func() { f.line("%s = %s + 1", i, i) })
 }
@@ -127,8 +127,8 @@ func (f *fn) rangeString(s *ast.RangeStmt, l *loop) {
 	decode := f.c.once("rune", func() string {
 		return f.c.symbol("U", reflect.ValueOf(func(s string, i int) (rune, int) { return utf8.DecodeRuneInString(s[i:]) }))
 	})
-	f.loop(l, true, s.Body, func() {
-		f.line("if %s < %s { } else { break }", i, n)
+	below := func() string { return i + " < " + n }
+	f.loop(l, true, s.Body, below, func() {
 		r, width := f.c.fresh("m"), f.c.fresh("m")
 		f.line("%s, %s := %s(%s, %s)", r, width, decode, x, i)
 		f.line("%s = %s", w, width)
@@ -160,7 +160,8 @@ func (f *fn) rangeChannel(s *ast.RangeStmt, l *loop, t types.Type, u *types.Chan
 	form := f.form(t)
 	ch := f.hold(f.c.text(form))
 	f.line("%s = %s", ch, f.order(s.X)())
-	f.loop(l, false, s.Body, func() {
+	none := func() string { return "" }
+	f.loop(l, false, s.Body, none, func() {
 		v, ok := f.c.fresh("m"), f.c.fresh("m")
 		f.line("%s, %s := %s(%s)", v, ok, f.c.channelFunc("receive", form), ch)
 		f.line("if %s { } else { break }", ok)

@@ -14,6 +14,7 @@ var Ketloom = []string{
 	"ketloom/operator/matrix",
 	"ketloom/operator/model",
 	"ketloom/script/progress",
+	"ketloom/script/report",
 }
 
 // Standard lists the packages of the standard library that scripts may import.
