@@ -9,6 +9,7 @@ import (
 	"strings"
 	"time"
 
+	"ketloom/lanczos/archive"
 	"ketloom/script"
 )
 
@@ -28,6 +29,7 @@ func run(args []string) int {
 	ctx, stop := interruptible()
 	defer stop()
 	err := script.Run(ctx, script.Options{Path: args[0], Args: rest, Stdin: os.Stdin, Stdout: os.Stdout, Stderr: os.Stderr})
+	archive.DiscardOpen() // a call into compiled code may still be writing
 	return exitCode(ctx, err)
 }
 

@@ -56,7 +56,7 @@ func (d *directives) directive(format string, i int) int {
 	for ; i < len(format) && strings.IndexByte("+-# 0123456789.*[", format[i]) >= 0; i++ {
 		switch format[i] {
 		case '*':
-			d.index(d.n)
+			d.index(d.width(d.n))
 			d.n++
 			d.out.WriteByte('*')
 		case '[':
@@ -93,6 +93,23 @@ func (d *directives) index(n int) {
 	if d.explicit {
 		fmt.Fprintf(&d.out, "[%d]", n+1)
 	}
+}
+
+// width returns the argument that holds args[n] as a plain integer.
+func (d *directives) width(n int) int {
+	if n < 0 || n >= len(d.args) {
+		return n
+	}
+	v, ok := Plain(d.args[n]).(Value)
+	if !ok {
+		return n
+	}
+	if d.explicit {
+		d.args = append(d.args, v.V)
+		return len(d.args) - 1
+	}
+	d.args[n] = v.V
+	return n
 }
 
 // replace returns the verb and argument that print args[n] for verb.
