@@ -2,6 +2,7 @@ package entangle
 
 import (
 	"context"
+	"fmt"
 	"math"
 	"sync"
 	"sync/atomic"
@@ -102,10 +103,33 @@ func (k *cut) survey(ctx context.Context) (*survey, error) {
 	for _, other := range workers[1:] {
 		first.merge(other)
 	}
+	if first.crowded() {
+		return nil, fmt.Errorf("entangle: more than %d rows and columns; cut off a part nearer to half of everything, use smaller sectors, or raise Options.Memory from %d MiB", k.most(), k.options.Memory>>20)
+	}
 	if first.wrong >= 0 {
 		return nil, errNumber(k.number, first.wrong)
 	}
 	return &first.survey, nil
+}
+
+// A part and the rest have leastNumbered rows and columns at most, or one for
+// bytesNumbered bytes of Options.Memory where these are more.
+const (
+	leastNumbered = 1 << 20
+	bytesNumbered = 128
+)
+
+// most is the largest number of rows and columns.
+func (k *cut) most() int { return int(max(leastNumbered, k.options.Memory/bytesNumbered)) }
+
+// crowded reports whether there are more. What one worker finds all of them do
+// together, so that the answer does not depend on their number.
+func (v *surveyor) crowded() bool {
+	n := v.rows.count
+	for _, columns := range v.columns {
+		n += columns.count
+	}
+	return n > v.cut.most()
 }
 
 // surveyor is a worker of the survey.
@@ -131,6 +155,9 @@ func newSurveyor(k *cut) *surveyor {
 }
 
 func (v *surveyor) look(state, from, to int) {
+	if v.crowded() {
+		return
+	}
 	columns := v.columns[state]
 	emit := func(a, b uint64, factor float64) {
 		v.rows.add(a, 0)

@@ -14,7 +14,9 @@ type Options struct {
 	// at a time; default DefaultMemory. Blocks that do not fit together are made
 	// one after the other, one that does not fit alone by its Gram matrix (see
 	// Accuracy in the package comment), and one whose Gram matrix is too large is
-	// refused.
+	// refused. So are cuts with more rows and columns in all than one for 128 bytes
+	// of Memory, and 2^20 in any case; numbering them takes that much for every
+	// worker.
 	Memory int64
 	// Error is a bound on the norm of the error of every state, such as the
 	// residual of an eigenvector divided by the gap; default 0, errors of rounding

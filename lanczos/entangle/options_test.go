@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 	"testing"
 
 	"ketloom/basis"
@@ -144,6 +145,19 @@ func TestCancelled(t *testing.T) {
 		cancel()
 		if cut != nil || !errors.Is(err, context.Canceled) {
 			t.Errorf("cancelled at %q: %v, %v", when, cut, err)
+		}
+	}
+}
+
+// A cut with more rows and columns than the memory is meant for is refused before
+// they are all numbered.
+func TestTooManyColumns(t *testing.T) {
+	b := makeBasis(t, makeSpace(t, repeated(21, spinHalf)...), nothing)
+	s := []State{randomState(t, rng(13), b)}
+	for _, o := range []*Options{{Memory: 1 << 20, Workers: 1}, {Memory: 1 << 20, Workers: 3}} {
+		_, err := SpaceCut(context.Background(), s, []int{5}, o)
+		if err == nil || !strings.Contains(err.Error(), "more than 1048576 rows and columns") {
+			t.Errorf("%+v: %v", o, err)
 		}
 	}
 }
