@@ -5,17 +5,12 @@ import (
 	"errors"
 	"fmt"
 	"io"
-	"time"
 
 	"github.com/traefik/yaegi/interp"
 
 	"ketloom/script/lower"
 	"ketloom/script/machine"
 )
-
-// Grace is the time that a script has after its context is done before it is
-// stopped.
-const Grace = 700 * time.Millisecond
 
 // Run checks a script and runs it until it ends.
 //

@@ -81,9 +81,10 @@ func TestPanicsBecomeErrorsWithTheirLine(t *testing.T) {
 		"fmt.Println(strings.Repeat(\"a\",\n\t\t-len(\"a\")))":                                                 "p.go:6: panic: strings: negative Repeat count",
 		"var wg sync.WaitGroup\n\twg.Add(1)\n\tgo func() {\n\t\tpanic(\"g\")\n\t}()\n\twg.Wait()":              "p.go:9: panic: g",
 		"defer fmt.Print()\n\tdefer func() {\n\t\tpanic(fmt.Sprint(\"again \", recover()))\n\t}()\n\tpanic(1)": "p.go:8: panic: again 1",
+		"time.AfterFunc(1, func() {\n\t\tpanic(\"timer\")\n\t})\n\tselect {}":                                  "p.go:7: panic: timer",
 		"var e error\n\tfmt.Println(e.Error())":                                                                "p.go:7: panic: runtime error: invalid memory address or nil pointer dereference\n[signal SIGSEGV: segmentation violation]",
 	} {
-		text := "package main\nimport (\"errors\"; \"fmt\"; \"strings\"; \"sync\")\nvar _, _, _ = errors.New, fmt.Sprint, strings.Repeat\nvar _ sync.Mutex\nfunc main() {\n\t" + src + "\n}\n"
+		text := "package main\nimport (\"errors\"; \"fmt\"; \"strings\"; \"sync\"; \"time\")\nvar _, _, _, _ = errors.New, fmt.Sprint, strings.Repeat, time.Now\nvar _ sync.Mutex\nfunc main() {\n\t" + src + "\n}\n"
 		err := Run(context.Background(), Options{Path: "p.go", Source: text})
 		var p *PanicError
 		if !errors.As(err, &p) {

@@ -13,6 +13,9 @@ import (
 	"ketloom/script"
 )
 
+// grace is the time that a script has to end by itself after an interrupt.
+const grace = 700 * time.Millisecond
+
 // run is the command of that name.
 func run(args []string) int {
 	if wantsHelp(args) {
@@ -43,7 +46,7 @@ func interruptible() (context.Context, func()) {
 		<-signals
 		select {
 		case <-signals:
-		case <-time.After(script.Grace):
+		case <-time.After(grace):
 		}
 		cancel()
 	}()

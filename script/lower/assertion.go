@@ -36,10 +36,12 @@ func (f *fn) assert(s string, from, to types.Type, two bool, pos token.Pos) []st
 	}
 	typ := reflect.FuncOf([]reflect.Type{num, in}, []reflect.Type{form}, false)
 	name := f.c.symbol("B", reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
+		at := token.Pos(in[0].Int())
+		defer f.c.in.Run.Mark(at)
 		x := plain(in[1])
 		v, ok := match(x)
 		if !ok {
-			f.c.assertionPanic(token.Pos(in[0].Int()), x, from, to)
+			f.c.assertionPanic(at, x, from, to)
 		}
 		return []reflect.Value{v}
 	}))
@@ -90,11 +92,13 @@ func (c *compiler) matcher(to types.Type, form reflect.Type) func(any) (reflect.
 
 // implements says whether the dynamic type of x has the methods of iface.
 func (c *compiler) implements(x any, iface *types.Interface, to types.Type) bool {
-	if v, ok := x.(machine.Value); ok {
-		return types.Implements(v.T.Checked, iface)
-	}
 	if iface.NumMethods() == 0 {
 		return true
+	}
+	if v, ok := x.(machine.Value); ok {
+		c.mutex.Lock()
+		defer c.mutex.Unlock()
+		return types.Implements(v.T.Checked, iface)
 	}
 	if form := c.form(to, 0); form.Kind() == reflect.Interface && form.NumMethod() > 0 {
 		return reflect.TypeOf(x).Implements(form)

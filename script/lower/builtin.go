@@ -189,7 +189,7 @@ func (f *fn) make(e *ast.CallExpr) string {
 			n = append(n, n[0])
 		}
 	}
-	name := f.c.once("make "+f.c.text(form), func() string { return f.c.symbol("N", makeFunc(form)) })
+	name := f.c.once("make "+f.c.text(form), func() string { return f.c.symbol("N", f.c.makeFunc(form)) })
 	r := f.hold(f.c.text(form))
 	f.line("%s = %s(%d, %s, %s)", r, name, e.Pos(), n[0], n[1])
 	return r
@@ -205,11 +205,12 @@ func (f *fn) orderInt(e ast.Expr) late {
 	return func() string { return f.explicit(x(), t, types.Typ[types.Int], e) }
 }
 
-func makeFunc(form reflect.Type) reflect.Value {
-	num := reflect.TypeFor[int]()
+func (c *compiler) makeFunc(form reflect.Type) reflect.Value {
+	run, num := c.in.Run, reflect.TypeFor[int]()
 	typ := reflect.FuncOf([]reflect.Type{num, num, num}, []reflect.Type{form}, false)
 	return reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
-		pos, n, c := int(in[0].Int()), int(in[1].Int()), int(in[2].Int())
+		pos, n, room := int(in[0].Int()), int(in[1].Int()), int(in[2].Int())
+		defer run.Mark(token.Pos(pos))
 		switch form.Kind() {
 		case reflect.Slice:
 			limit := 1 << 47
@@ -219,10 +220,10 @@ func makeFunc(form reflect.Type) reflect.Value {
 			if n < 0 || n > limit {
 				machine.Make(pos, "len")
 			}
-			if c < n || c > limit {
+			if room < n || room > limit {
 				machine.Make(pos, "cap")
 			}
-			return []reflect.Value{reflect.MakeSlice(form, n, c)}
+			return []reflect.Value{reflect.MakeSlice(form, n, room)}
 		case reflect.Map:
 			return []reflect.Value{reflect.MakeMapWithSize(form, max(n, 0))}
 		}

@@ -6,8 +6,6 @@ import (
 	"go/types"
 	"reflect"
 	"strings"
-
-	"ketloom/script/machine"
 )
 
 // receive makes <-ch.
@@ -54,13 +52,13 @@ func (c *compiler) channelFunc(op string, form reflect.Type) string {
 			})
 		case "send":
 			return make([]reflect.Type{num, form, form.Elem()}, nil, func(in []reflect.Value) []reflect.Value {
-				defer machine.Mark(token.Pos(in[0].Int()))
+				defer run.Mark(token.Pos(in[0].Int()))
 				run.Send(in[1], in[2])
 				return nil
 			})
 		case "close":
 			return make([]reflect.Type{num, form}, nil, func(in []reflect.Value) []reflect.Value {
-				defer machine.Mark(token.Pos(in[0].Int()))
+				defer run.Mark(token.Pos(in[0].Int()))
 				in[1].Close()
 				return nil
 			})

@@ -98,7 +98,7 @@ func (f *fn) site(e *ast.CallExpr, sig *types.Signature, recv *receiver, target 
 	track := f.c.tracked(tt)
 	typ := reflect.FuncOf(in, out, false)
 	fun := reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
-		defer machine.Mark(pos)
+		defer f.c.in.Run.Mark(pos)
 		for i := range in {
 			in[i] = convert[i](in[i])
 		}

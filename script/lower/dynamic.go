@@ -25,17 +25,17 @@ func (f *fn) dynamic(t types.Type, name string, sig *types.Signature) string {
 	return f.c.once("dynamic "+name+" "+f.c.text(typ), func() string {
 		return f.c.symbol("D", reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
 			pos := token.Pos(in[0].Int())
+			defer f.c.in.Run.Mark(pos)
 			if in[1].IsNil() {
 				machine.Nil(int(pos))
 			}
-			return invoke(pos, machine.Plain(in[1].Interface()), name, in[2:], out)
+			return invoke(machine.Plain(in[1].Interface()), name, in[2:], out)
 		}))
 	})
 }
 
 // invoke calls a method of a compiled or a script's value.
-func invoke(pos token.Pos, x any, name string, args []reflect.Value, out []reflect.Type) []reflect.Value {
-	defer machine.Mark(pos)
+func invoke(x any, name string, args []reflect.Value, out []reflect.Type) []reflect.Value {
 	if v, ok := x.(machine.Value); ok {
 		return v.Call(name, args)
 	}

@@ -49,7 +49,7 @@ func (f *fn) equal(a, b string, t types.Type, op token.Token, n ast.Node) string
 		return "(" + a + " " + op.String() + " " + b + ")"
 	}
 	form := f.form(t)
-	name := f.c.once("equal "+f.c.text(form), func() string { return f.c.symbol("E", equalFunc(form)) })
+	name := f.c.once("equal "+f.c.text(form), func() string { return f.c.symbol("E", f.c.equalFunc(form)) })
 	a, b = f.atomOf(a, f.c.text(form)), f.atomOf(b, f.c.text(form))
 	r := f.temp("bool")
 	f.line("%s = %s(%d, %s, %s)", r, name, n.Pos(), a, b)
@@ -61,10 +61,10 @@ func (f *fn) equal(a, b string, t types.Type, op token.Token, n ast.Node) string
 
 // equalFunc compares as compiled code does, after taking away what stands
 // between interfaces and a script's values.
-func equalFunc(form reflect.Type) reflect.Value {
+func (c *compiler) equalFunc(form reflect.Type) reflect.Value {
 	typ := reflect.FuncOf([]reflect.Type{reflect.TypeFor[int](), form, form}, []reflect.Type{reflect.TypeFor[bool]()}, false)
 	return reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
-		defer machine.Mark(token.Pos(in[0].Int()))
+		defer c.in.Run.Mark(token.Pos(in[0].Int()))
 		return []reflect.Value{reflect.ValueOf(machine.Plain(in[1].Interface()) == machine.Plain(in[2].Interface()))}
 	})
 }

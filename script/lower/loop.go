@@ -1,6 +1,7 @@
 package lower
 
 import (
+	"fmt"
 	"go/ast"
 	"go/token"
 	"go/types"
@@ -297,4 +298,4 @@ func (f *fn) labeled(s *ast.LabeledStmt) {
 }
 
 // gotoLabel is the emitted label for a goto.
-func (f *fn) gotoLabel(id *ast.Ident) string { return "goto_" + plainName(id.Name) }
+func (f *fn) gotoLabel(id *ast.Ident) string { return fmt.Sprintf("goto_%x", id.Name) }

@@ -63,11 +63,11 @@ func (f *fn) methodFunction(base receiver, method *types.Func, n ast.Node) (stri
 	if !ok {
 		f.refuse(n, "the method %s is not available in a script", method.Name())
 	}
-	return f.c.symbol("M", compiledMethod(m.Func, form, f.c.funcForm(sig, f.pos), n.Pos())) + "(", sig
+	return f.c.symbol("M", f.c.compiledMethod(m.Func, form, f.c.funcForm(sig, f.pos), n.Pos())) + "(", sig
 }
 
 // compiledMethod is a compiled method as a function of its receiver.
-func compiledMethod(m reflect.Value, recv, form reflect.Type, pos token.Pos) reflect.Value {
+func (c *compiler) compiledMethod(m reflect.Value, recv, form reflect.Type, pos token.Pos) reflect.Value {
 	in, out := []reflect.Type{recv}, []reflect.Type{}
 	for i := range form.NumIn() {
 		in = append(in, form.In(i))
@@ -76,7 +76,7 @@ func compiledMethod(m reflect.Value, recv, form reflect.Type, pos token.Pos) ref
 		out = append(out, form.Out(i))
 	}
 	return reflect.MakeFunc(reflect.FuncOf(in, out, false), func(in []reflect.Value) []reflect.Value {
-		defer machine.Mark(pos)
+		defer c.in.Run.Mark(pos)
 		for i := range in {
 			in[i] = fitted(in[i], m.Type().In(i))
 		}

@@ -13,11 +13,18 @@ import (
 // support enters what every lowered program may use into package h.
 func (c *compiler) support() {
 	run := c.in.Run
+	raise := func(f func(pos, i, n int)) func(pos, i, n int) {
+		return func(pos, i, n int) { run.Raise(func() { f(pos, i, n) }) }
+	}
+	fail := func(f func(pos int)) func(pos int) {
+		return func(pos int) { run.Raise(func() { f(pos) }) }
+	}
 	for name, v := range map[string]any{
-		"Index": machine.Index, "IndexUnsigned": machine.IndexUnsigned, "Divide": machine.Divide, "Shift": machine.Shift, "Nil": machine.Nil,
-		"NilMap": machine.NilMap, "Array": machine.Array, "Continued": machine.Continued,
-		"Throw":     func(pos int, v any) { machine.Throw(token.Pos(pos), v) },
-		"NewDefers": machine.NewDefers,
+		"Index": raise(machine.Index), "IndexUnsigned": raise(machine.IndexUnsigned), "Array": raise(machine.Array),
+		"Divide": fail(machine.Divide), "Shift": fail(machine.Shift), "Nil": fail(machine.Nil),
+		"NilMap": fail(machine.NilMap), "Continued": fail(machine.Continued),
+		"Throw":     func(pos int, v any) { run.Raise(func() { machine.Throw(token.Pos(pos), v) }) },
+		"NewDefers": run.NewDefers,
 		"Do":        func(d *machine.Defers, f func()) { d.Do(f) },
 		"Push":      func(d *machine.Defers, f func()) { d.Push(f) },
 		"Recover":   func(d *machine.Defers) any { return d.Recover() },

@@ -2,6 +2,7 @@ package lower
 
 import (
 	"go/ast"
+	"go/token"
 	"go/types"
 	"reflect"
 
@@ -40,7 +41,7 @@ func (f *fn) sliceExpr(e *ast.SliceExpr) late {
 			f.checkNil(s, e)
 		}
 		result := f.form(f.typeOf(e))
-		name := f.c.once("slice "+f.c.text(form)+"|"+f.c.text(result), func() string { return f.c.symbol("L", sliceFunc(form, result)) })
+		name := f.c.once("slice "+f.c.text(form)+"|"+f.c.text(result), func() string { return f.c.symbol("L", f.c.sliceFunc(form, result)) })
 		args := ""
 		for _, b := range []late{lo, hi, max} {
 			if b == nil {
@@ -67,24 +68,25 @@ func (f *fn) sliceExpr(e *ast.SliceExpr) late {
 
 // sliceFunc slices with Go's tests. The first argument after the place says
 // which bounds are given.
-func sliceFunc(form, result reflect.Type) reflect.Value {
+func (c *compiler) sliceFunc(form, result reflect.Type) reflect.Value {
 	num := reflect.TypeFor[int]()
 	typ := reflect.FuncOf([]reflect.Type{num, num, form, num, num, num}, []reflect.Type{result}, false)
 	return reflect.MakeFunc(typ, func(in []reflect.Value) []reflect.Value {
 		pos, which, x := int(in[0].Int()), in[1].Int(), in[2]
+		defer c.in.Run.Mark(token.Pos(pos))
 		lo, hi, max := int(in[3].Int()), int(in[4].Int()), int(in[5].Int())
 		if x.Kind() == reflect.Pointer {
 			x = x.Elem()
 		}
 		n := x.Len()
-		c := n
+		room := n
 		if x.Kind() == reflect.Slice {
-			c = x.Cap()
+			room = x.Cap()
 		}
 		if which&2 == 0 {
 			hi = n
 		}
-		checkBounds(pos, lo, hi, max, n, c, which, x.Kind())
+		checkBounds(pos, lo, hi, max, n, room, which, x.Kind())
 		var r reflect.Value
 		if which&4 != 0 {
 			r = x.Slice3(lo, hi, max)

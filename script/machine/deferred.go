@@ -3,13 +3,14 @@ package machine
 // Defers is the list of deferred calls of one call of a function, and the
 // panic that is under way in it.
 type Defers struct {
+	run     *Run
 	list    []func()
 	pending *Thrown
 	left    *exit
 }
 
 // NewDefers returns an empty list.
-func NewDefers() *Defers { return new(Defers) }
+func (r *Run) NewDefers() *Defers { return &Defers{run: r} }
 
 // Push adds a call whose function and arguments are already fixed.
 func (d *Defers) Push(f func()) { d.list = append(d.list, f) }
@@ -18,17 +19,22 @@ func (d *Defers) Push(f func()) { d.list = append(d.list, f) }
 // not. A panic that no deferred call recovered goes on afterwards; the end of
 // the program goes on at once.
 func (d *Defers) Do(body func()) {
+	d.all(body)
+	if d.left != nil {
+		d.run.raise(*d.left)
+	}
+	if d.pending != nil {
+		d.run.raise(d.pending)
+	}
+}
+
+func (d *Defers) all(body func()) {
+	defer d.run.enter()()
 	d.protect(body)
 	for len(d.list) > 0 && d.left == nil {
 		f := d.list[len(d.list)-1]
 		d.list = d.list[:len(d.list)-1]
 		d.protect(f)
-	}
-	if d.left != nil {
-		panic(*d.left)
-	}
-	if d.pending != nil {
-		panic(d.pending)
 	}
 }
 

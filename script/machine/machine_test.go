@@ -59,7 +59,10 @@ func TestEqualTypesOnly(t *testing.T) {
 func TestDefers(t *testing.T) {
 	var log []string
 	note := func(s string) func() { return func() { log = append(log, s) } }
-	d := NewDefers()
+	r := New(Streams{}, nil)
+	defer r.Close()
+	defer r.enter()()
+	d := r.NewDefers()
 	func() {
 		defer func() {
 			if th, ok := recover().(*Thrown); !ok || th.Value != "second" {
@@ -76,7 +79,7 @@ func TestDefers(t *testing.T) {
 	if got := strings.Join(log, ""); got != "ba" {
 		t.Errorf("deferred calls ran as %q", got)
 	}
-	d = NewDefers()
+	d = r.NewDefers()
 	d.Do(func() {
 		d.Push(func() {
 			if r := d.Recover(); r != "x" {
@@ -94,7 +97,7 @@ func TestExitSkipsDeferredCallsAndRecover(t *testing.T) {
 	r := New(Streams{}, nil)
 	defer r.Close()
 	r.Main(func() {
-		d := NewDefers()
+		d := r.NewDefers()
 		d.Do(func() {
 			d.Push(func() { t.Error("a deferred call ran") })
 			r.Exit(5)
@@ -183,6 +186,26 @@ func TestWhatIsLeftOpenIsDiscarded(t *testing.T) {
 	r.Close()
 	if n != 1 {
 		t.Errorf("discarded %d times", n)
+	}
+}
+
+func TestPanicInAForeignGoroutineEndsTheRun(t *testing.T) {
+	r := New(Streams{}, nil)
+	defer r.Close()
+	go r.Raise(func() { Throw(3, "elsewhere") })
+	if p := (<-r.Ended()).Panic(); p == nil || p.Value != "elsewhere" || p.Pos != 3 {
+		t.Errorf("ended with %v", p)
+	}
+}
+
+func TestNothingIsWrittenAfterTheEnd(t *testing.T) {
+	var out bytes.Buffer
+	r := New(Streams{Out: &out, Err: &out}, nil)
+	fmt.Fprint(r.Out(), "a")
+	fmt.Fprint(r.Err(), "b")
+	r.Close()
+	if _, err := fmt.Fprint(r.Out(), "c"); err == nil || out.String() != "ab" {
+		t.Errorf("wrote %q, %v", out.String(), err)
 	}
 }
 

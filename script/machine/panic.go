@@ -55,20 +55,6 @@ func throw(pos int, format string, args ...any) {
 	Throw(token.Pos(pos), fault(fmt.Sprintf(format, args...)))
 }
 
-// Mark is deferred around calls into compiled code: a panic that began there
-// gets the place of the call.
-func Mark(pos token.Pos) {
-	r := recover()
-	if r == nil {
-		return
-	}
-	switch r.(type) {
-	case *Thrown, exit:
-		panic(r)
-	}
-	panic(&Thrown{Value: r, Pos: pos, Stack: debug.Stack()})
-}
-
 // thrown returns r as a panic of the script.
 func thrown(r any) *Thrown {
 	if t, ok := r.(*Thrown); ok {

@@ -25,6 +25,8 @@ type Run struct {
 	types   []*Type
 	pipes   []*pipe
 	open    []discarder
+	gates   []*gate
+	homes   map[uint64]int // goroutines in which panics are handled
 	process *process
 	// Compiled tells objects of compiled packages from those of the script.
 	Compiled func(types.Object) bool
@@ -37,7 +39,14 @@ type outcome struct {
 
 // New returns the process for one run. args[0] is the name of the script.
 func New(streams Streams, args []string) *Run {
-	return &Run{Args: args, streams: streams, done: make(chan struct{}), ended: make(chan outcome, 1)}
+	streams.Out, streams.Err = gated(streams.Out, streams.Err)
+	r := &Run{Args: args, streams: streams, done: make(chan struct{}), ended: make(chan outcome, 1)}
+	for _, w := range []io.Writer{streams.Out, streams.Err} {
+		if g, ok := w.(*gate); ok {
+			r.gates = append(r.gates, g)
+		}
+	}
+	return r
 }
 
 // Main runs the script's main function and reports how it ended. A panic is
@@ -48,6 +57,7 @@ func (r *Run) Main(main func()) { r.guard(main, true) }
 func (r *Run) Go(f func()) { go r.guard(f, false) }
 
 func (r *Run) guard(f func(), main bool) {
+	defer r.enter()()
 	finished := false
 	defer func() {
 		switch p := recover().(type) {
@@ -91,11 +101,13 @@ func (r *Run) Close() {
 	r.Stop()
 	r.discard()
 	r.mutex.Lock()
-	defer r.mutex.Unlock()
-	for _, p := range r.pipes {
+	pipes := r.pipes
+	r.pipes = nil
+	r.mutex.Unlock()
+	for _, p := range pipes {
 		p.close()
 	}
-	r.pipes = nil
+	r.shut()
 }
 
 // Type returns the run-time form of t, the same for identical types.
