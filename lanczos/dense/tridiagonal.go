@@ -49,7 +49,7 @@ func diagonalise(d, e, z []float64) error {
 // blockEnd returns the end of the unreduced block that begins at first.
 func blockEnd(d, e []float64, first int, size float64) int {
 	for m := first; m < len(d)-1; m++ {
-		if x := math.Abs(e[m]); x <= epsilon*(math.Abs(d[m])+math.Abs(d[m+1])) || x <= epsilon*epsilon*size {
+		if x := math.Abs(e[m]); x <= epsilon*(math.Abs(d[m])+math.Abs(d[m+1])) || x <= epsilon*size {
 			return m
 		}
 	}
