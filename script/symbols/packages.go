@@ -15,6 +15,7 @@ var Ketloom = []string{
 	"ketloom/operator/model",
 	"ketloom/script/progress",
 	"ketloom/script/report",
+	"ketloom/script/sweep",
 }
 
 // Standard lists the packages of the standard library that scripts may import.
