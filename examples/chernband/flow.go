@@ -47,7 +47,10 @@ func threadFlux(ctx context.Context, s settings, bands model.TightBinding, secto
 			if levels > len(vectors[i]) {
 				levels = len(vectors[i])
 			}
-			result, err := solve(ctx, s, sec, levels, vectors[i][:levels])
+			result, err := solve(ctx, sec, levels, &lanczos.Options{
+				Seed: s.seed, Start: vectors[i][:levels],
+				Tolerance: 1e-8, MissChance: 1e-3, // energies are good to 1e-14 all the same
+			})
 			if err != nil {
 				return nil, fmt.Errorf("sector (%d,%d) at flux %g: %w", sec.kx, sec.ky, flux, err)
 			}

@@ -47,7 +47,7 @@ func solveSectors(ctx context.Context, s settings, bands model.TightBinding, bar
 		return nil, err
 	}
 	for i := range sectors {
-		sectors[i].result, err = solve(ctx, s, sectors[i], s.levels, nil)
+		sectors[i].result, err = solve(ctx, sectors[i], s.levels, &lanczos.Options{Seed: s.seed})
 		if err != nil {
 			return nil, fmt.Errorf("sector (%d,%d): %w", sectors[i].kx, sectors[i].ky, err)
 		}
@@ -67,7 +67,7 @@ func reachGap(ctx context.Context, s settings, sectors []sector) error {
 			if len(found) == sec.basis.Len() || found[len(found)-1].Energy > edge {
 				continue
 			}
-			result, err := solve(ctx, s, sec, 2*len(found), sec.result.Vectors)
+			result, err := solve(ctx, sec, 2*len(found), &lanczos.Options{Seed: s.seed, Start: sec.result.Vectors})
 			if err != nil {
 				return fmt.Errorf("sector (%d,%d): %w", sec.kx, sec.ky, err)
 			}
@@ -133,9 +133,8 @@ func printPlan(sectors []sector) error {
 	return nil
 }
 
-// solve returns the lowest levels of a sector, with vectors; start may hold
-// vectors to begin with.
-func solve(ctx context.Context, s settings, sec sector, levels int, start []lanczos.Vector) (*lanczos.Result, error) {
+// solve returns the lowest levels of a sector, with vectors.
+func solve(ctx context.Context, sec sector, levels int, opts *lanczos.Options) (*lanczos.Result, error) {
 	m, err := matrix.New(ctx, sec.h, sec.basis, nil)
 	if err != nil {
 		return nil, err
@@ -143,7 +142,7 @@ func solve(ctx context.Context, s settings, sec sector, levels int, start []lanc
 	if levels > m.Dim() {
 		levels = m.Dim()
 	}
-	return lanczos.Lowest(ctx, m, levels, &lanczos.Options{Seed: s.seed, Start: start})
+	return lanczos.Lowest(ctx, m, levels, opts)
 }
 
 // printSectors prints the table of levels.
