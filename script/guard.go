@@ -2,6 +2,7 @@ package script
 
 import (
 	"runtime/metrics"
+	"sync/atomic"
 	"time"
 
 	"ketloom/script/machine"
@@ -17,6 +18,9 @@ const (
 
 const stackMetric = "/memory/classes/heap/stacks:bytes"
 
+// active is the number of scripts that run.
+var active atomic.Int32
+
 func stacks() uint64 {
 	s := []metrics.Sample{{Name: stackMetric}}
 	metrics.Read(s)
@@ -28,6 +32,8 @@ func stacks() uint64 {
 
 // watch ends the run when its functions call each other without end.
 func watch(run *machine.Run, done <-chan struct{}) {
+	active.Add(1)
+	defer active.Add(-1)
 	start := stacks()
 	t := time.NewTicker(stackInterval)
 	defer t.Stop()
@@ -36,10 +42,15 @@ func watch(run *machine.Run, done <-chan struct{}) {
 		case <-done:
 			return
 		case <-t.C:
-			if stacks() > start+stackLimit {
+			now := stacks()
+			if now <= start+stackLimit {
+				continue
+			}
+			if active.Load() == 1 || run.TooDeep() {
 				run.Overflow()
 				return
 			}
+			start = now // another script's, or the host's
 		}
 	}
 }

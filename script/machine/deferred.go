@@ -19,7 +19,12 @@ func (d *Defers) Push(f func()) { d.list = append(d.list, f) }
 // not. A panic that no deferred call recovered goes on afterwards; the end of
 // the program goes on at once.
 func (d *Defers) Do(body func()) {
-	d.all(body)
+	protected(d, body)
+	for len(d.list) > 0 && d.left == nil {
+		f := d.list[len(d.list)-1]
+		d.list = d.list[:len(d.list)-1]
+		protected(d, f)
+	}
 	if d.left != nil {
 		d.run.raise(*d.left)
 	}
@@ -28,17 +33,10 @@ func (d *Defers) Do(body func()) {
 	}
 }
 
-func (d *Defers) all(body func()) {
-	defer d.run.enter()()
-	d.protect(body)
-	for len(d.list) > 0 && d.left == nil {
-		f := d.list[len(d.list)-1]
-		d.list = d.list[:len(d.list)-1]
-		d.protect(f)
-	}
-}
-
-func (d *Defers) protect(f func()) {
+// protected runs f and keeps its panic.
+//
+//go:noinline
+func protected(d *Defers, f func()) {
 	defer func() {
 		switch r := recover().(type) {
 		case nil:

@@ -1,60 +1,43 @@
 package machine
 
 import (
-	"bytes"
 	"go/token"
+	"reflect"
 	"runtime"
 	"runtime/debug"
-	"strconv"
 )
 
 // A function of the script may be called by compiled code in a goroutine that
 // the script did not start: by a timer, or by a worker that reports progress. A
 // panic there would end the whole program, with a stack dump. So where a panic
-// begins the machine asks whose goroutine it is; in a foreign one, outside of
-// deferred calls, the panic ends the run instead.
+// begins the machine looks down the stack; where nobody would handle the panic,
+// it ends the run instead.
 
-// goroutine returns the number of the present goroutine.
-func goroutine() uint64 {
-	var buf [40]byte
-	b := bytes.TrimPrefix(buf[:runtime.Stack(buf[:], false)], []byte("goroutine "))
-	if i := bytes.IndexByte(b, ' '); i > 0 {
-		n, err := strconv.ParseUint(string(b[:i]), 10, 64)
-		if err == nil {
-			return n
-		}
-	}
-	return 0
+// handlers are the entries of the functions below which panics are handled.
+var handlers = map[uintptr]bool{
+	reflect.ValueOf(guarded).Pointer():   true,
+	reflect.ValueOf(protected).Pointer(): true,
 }
 
-// enter notes that the present goroutine has someone who handles its panics.
-func (r *Run) enter() (leave func()) {
-	id := goroutine()
-	r.mutex.Lock()
-	if r.homes == nil {
-		r.homes = map[uint64]int{}
-	}
-	r.homes[id]++
-	r.mutex.Unlock()
-	return func() {
-		r.mutex.Lock()
-		if r.homes[id]--; r.homes[id] == 0 {
-			delete(r.homes, id)
+// foreign says that no function on the stack handles panics.
+func foreign() bool {
+	for size := 64; ; size *= 4 {
+		pcs := make([]uintptr, size)
+		n := runtime.Callers(2, pcs)
+		for _, pc := range pcs[:n] {
+			if f := runtime.FuncForPC(pc - 1); f != nil && handlers[f.Entry()] {
+				return false
+			}
 		}
-		r.mutex.Unlock()
+		if n < size {
+			return true
+		}
 	}
-}
-
-func (r *Run) foreign() bool {
-	id := goroutine()
-	r.mutex.Lock()
-	defer r.mutex.Unlock()
-	return r.homes[id] == 0
 }
 
 // raise lets a panic go on, or ends the run if nobody would handle it.
 func (r *Run) raise(p any) {
-	if !r.foreign() {
+	if !foreign() {
 		panic(p)
 	}
 	if e, ok := p.(exit); ok {

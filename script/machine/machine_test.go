@@ -61,9 +61,8 @@ func TestDefers(t *testing.T) {
 	note := func(s string) func() { return func() { log = append(log, s) } }
 	r := New(Streams{}, nil)
 	defer r.Close()
-	defer r.enter()()
 	d := r.NewDefers()
-	func() {
+	r.NewDefers().Do(func() {
 		defer func() {
 			if th, ok := recover().(*Thrown); !ok || th.Value != "second" {
 				t.Errorf("panic %v, want the second", th)
@@ -75,7 +74,7 @@ func TestDefers(t *testing.T) {
 			d.Push(note("b"))
 			Throw(1, "first")
 		})
-	}()
+	})
 	if got := strings.Join(log, ""); got != "ba" {
 		t.Errorf("deferred calls ran as %q", got)
 	}
@@ -196,6 +195,30 @@ func TestPanicInAForeignGoroutineEndsTheRun(t *testing.T) {
 	if p := (<-r.Ended()).Panic(); p == nil || p.Value != "elsewhere" || p.Pos != 3 {
 		t.Errorf("ended with %v", p)
 	}
+}
+
+func TestDepthIsFoundOnTheStack(t *testing.T) {
+	r, other := New(Streams{}, nil), New(Streams{}, nil)
+	defer r.Close()
+	defer other.Close()
+	deep, end := make(chan bool), make(chan bool)
+	var down func(n int) int
+	down = func(n int) int {
+		if n == 0 {
+			deep <- true
+			<-end
+			return 0
+		}
+		return down(n-1) + 1
+	}
+	r.Go(func() { down(2 * tooDeep) })
+	other.Go(func() { deep <- true; <-end })
+	<-deep
+	<-deep
+	if !r.TooDeep() || other.TooDeep() {
+		t.Errorf("deep %v, other %v", r.TooDeep(), other.TooDeep())
+	}
+	close(end)
 }
 
 func TestNothingIsWrittenAfterTheEnd(t *testing.T) {

@@ -26,7 +26,7 @@ type Run struct {
 	pipes   []*pipe
 	open    []discarder
 	gates   []*gate
-	homes   map[uint64]int // goroutines in which panics are handled
+	own     map[uint64]bool // numbers of the goroutines that the script started
 	process *process
 	// Compiled tells objects of compiled packages from those of the script.
 	Compiled func(types.Object) bool
@@ -40,7 +40,7 @@ type outcome struct {
 // New returns the process for one run. args[0] is the name of the script.
 func New(streams Streams, args []string) *Run {
 	streams.Out, streams.Err = gated(streams.Out, streams.Err)
-	r := &Run{Args: args, streams: streams, done: make(chan struct{}), ended: make(chan outcome, 1)}
+	r := &Run{Args: args, streams: streams, own: map[uint64]bool{}, done: make(chan struct{}), ended: make(chan outcome, 1)}
 	for _, w := range []io.Writer{streams.Out, streams.Err} {
 		if g, ok := w.(*gate); ok {
 			r.gates = append(r.gates, g)
@@ -51,14 +51,18 @@ func New(streams Streams, args []string) *Run {
 
 // Main runs the script's main function and reports how it ended. A panic is
 // returned, not raised.
-func (r *Run) Main(main func()) { r.guard(main, true) }
+func (r *Run) Main(main func()) { guarded(r, main, true) }
 
 // Go runs f in its own goroutine; a panic in it ends the run.
-func (r *Run) Go(f func()) { go r.guard(f, false) }
+func (r *Run) Go(f func()) { go guarded(r, f, false) }
 
-func (r *Run) guard(f func(), main bool) {
-	defer r.enter()()
+// guarded runs f and ends the run if it panics. It is found on stacks by its
+// entry.
+//
+//go:noinline
+func guarded(r *Run, f func(), main bool) {
 	finished := false
+	defer r.enter()()
 	defer func() {
 		switch p := recover().(type) {
 		case nil:
