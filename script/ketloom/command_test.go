@@ -64,7 +64,7 @@ func TestCommands(t *testing.T) {
 		{"check -h", 0, "ketloom check", ""},
 		{"help packages", 0, "ketloom/basis/group", ""},
 		{"help sing", exitUsage, "", "no help"},
-		{"version", 0, "ketloom ", ""},
+		{"version", 0, "Ketloom 0.1.0", ""},
 	} {
 		cmd := invocation(strings.Fields(c.args)...)
 		var out, errs bytes.Buffer

@@ -13,14 +13,19 @@ No Go tool is needed; go run gives the same output where there is one.
 
   ketloom run FILE-OR-FOLDER [-- ARGUMENTS]   check a script and run it
   ketloom check FILE-OR-FOLDER ...            check scripts, run nothing
+  ketloom new NAME                            write a commented script to begin with
+  ketloom doc [SUBJECT ...]                   print the documentation of a package or name
+  ketloom completion bash|zsh|fish            print what the shell needs to complete
   ketloom version                             print the version
-  ketloom help [run|check|packages]           print more about a command
+  ketloom help [COMMAND|packages]             print more about a command
 
 Examples
 
   ketloom run chain.go
   ketloom run chain.go -- -sites 12 -out chain.csv
   ketloom check examples/chain
+  ketloom new ladder
+  ketloom doc basis
 `
 
 const helpRun = `ketloom run FILE-OR-FOLDER [-- ARGUMENTS]
@@ -67,6 +72,49 @@ Example
   ketloom check chain.go ladder.go
 `
 
+const helpNew = `ketloom new NAME
+
+Writes NAME.go, a commented script that runs as it is: flags, a model, its
+sectors and their lowest levels. An existing file is never changed.
+
+Exit codes
+    0  the file is written
+    1  the file exists or cannot be written
+   64  the command line is wrong
+
+Example
+
+  ketloom new ladder
+  ketloom run ladder.go -- -length 12
+`
+
+const helpDoc = `ketloom doc [SUBJECT ...]
+
+Prints the documentation that the packages carry in their source. A subject is a
+package (basis, operator/matrix), a name in one (lanczos.Lowest) or a method
+(basis.Basis.Len). Without a subject, the packages are listed.
+
+Exit codes
+    0  every subject has a page
+    1  one has none; the message names what comes close
+
+Examples
+
+  ketloom doc
+  ketloom doc basis
+  ketloom doc lanczos.Options model.XXZ
+`
+
+const helpCompletion = `ketloom completion bash|zsh|fish
+
+Prints a script that lets the shell complete commands, packages and file names.
+
+Examples
+
+  source <(ketloom completion bash)
+  ketloom completion fish > ~/.config/fish/completions/ketloom.fish
+`
+
 // help prints the text of a command.
 func help(args []string) int {
 	if len(args) == 0 {
@@ -78,11 +126,17 @@ func help(args []string) int {
 		fmt.Print(helpRun)
 	case "check":
 		fmt.Print(helpCheck)
+	case "new":
+		fmt.Print(helpNew)
+	case "doc":
+		fmt.Print(helpDoc)
+	case "completion":
+		fmt.Print(helpCompletion)
 	case "packages":
 		ours, standard := script.Packages()
 		fmt.Printf("Packages that a script may import\n\n  %s\n\n  %s\n", strings.Join(ours, "\n  "), strings.Join(standard, "\n  "))
 	default:
-		fmt.Fprintf(os.Stderr, "ketloom: there is no help on %q; there is on run, check and packages\n", args[0])
+		fmt.Fprintf(os.Stderr, "ketloom: there is no help on %q; there is on run, check, new, doc, completion and packages\n", args[0])
 		return exitUsage
 	}
 	return exitOK

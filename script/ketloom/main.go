@@ -10,6 +10,7 @@ package main
 import (
 	"fmt"
 	"os"
+	"strings"
 )
 
 // Exit codes of the command. A script's own code is passed on.
@@ -34,11 +35,17 @@ func command(args []string) int {
 		return run(args[1:])
 	case "check":
 		return check(args[1:])
+	case "new":
+		return newScript(args[1:])
+	case "doc":
+		return page(args[1:])
+	case "completion":
+		return completion(args[1:])
 	case "version", "-version", "--version":
 		return version()
 	case "help", "-h", "-help", "--help":
 		return help(args[1:])
 	}
-	fmt.Fprintf(os.Stderr, "ketloom: there is no command %q; the commands are run, check, version and help\n", args[0])
+	fmt.Fprintf(os.Stderr, "ketloom: there is no command %q; the commands are %s\n", args[0], strings.Join(commands, ", "))
 	return exitUsage
 }
