@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"time"
 
 	"ketloom/lanczos"
 	"ketloom/operator/model"
@@ -34,6 +35,7 @@ func threadFlux(ctx context.Context, s settings, bands model.TightBinding, secto
 		vectors[i] = sectors[i].result.Vectors
 	}
 	var points []flowPoint
+	begun, total := time.Now(), int64((s.steps+1)*len(followed))
 	for step := 0; step <= s.steps; step++ {
 		flux := float64(step) / float64(s.steps)
 		p, err := project(s, bands, flux)
@@ -60,7 +62,8 @@ func threadFlux(ctx context.Context, s settings, bands model.TightBinding, secto
 				point.energies = append(point.energies, l.Energy)
 			}
 			points = append(points, point)
-			bar.Report("flux", int64(step*len(followed)+n+1), int64((s.steps+1)*len(followed)), 0)
+			done := int64(step*len(followed) + n + 1)
+			bar.Report("flux", done, total, float64(done)/time.Since(begun).Seconds())
 		}
 	}
 	return points, nil

@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"sort"
+	"time"
 
 	"ketloom/basis"
 	"ketloom/lanczos"
@@ -46,12 +47,13 @@ func solveSectors(ctx context.Context, s settings, bands model.TightBinding, bar
 	if err := printPlan(sectors); err != nil {
 		return nil, err
 	}
+	begun := time.Now()
 	for i := range sectors {
 		sectors[i].result, err = solve(ctx, sectors[i], s.levels, &lanczos.Options{Seed: s.seed})
 		if err != nil {
 			return nil, fmt.Errorf("sector (%d,%d): %w", sectors[i].kx, sectors[i].ky, err)
 		}
-		bar.Report("sectors", int64(i+1), int64(len(sectors)), 0)
+		bar.Report("sectors", int64(i+1), int64(len(sectors)), float64(i+1)/time.Since(begun).Seconds())
 	}
 	return sectors, reachGap(ctx, s, sectors)
 }
