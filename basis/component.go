@@ -62,10 +62,10 @@ func (b *Basis) Orbit(i int, dst []Component) []Component {
 		return append(dst, Component{r, 1})
 	}
 	weight := math.Sqrt(float64(b.Stabiliser(i)) / float64(b.sym.order))
-	first := len(dst)
+	first, repeats := len(dst), b.Stabiliser(i) > 1
 	for g := range b.sym.order {
 		c := Configuration(b.sym.image(g, uint64(r)))
-		if seen(dst[first:], c) {
+		if repeats && seen(dst[first:], c) {
 			continue
 		}
 		z := b.sym.roots[b.sym.phase(g, uint64(r))]
