@@ -10,7 +10,6 @@ import (
 
 	"ketloom/script/lower"
 	"ketloom/script/machine"
-	"ketloom/script/symbols"
 	"ketloom/script/universe"
 )
 
@@ -20,6 +19,8 @@ import (
 func Check(o Options) error {
 	run := machine.New(machine.Streams{In: strings.NewReader(""), Out: io.Discard, Err: io.Discard}, []string{o.Path})
 	defer run.Close()
+	o = o.filled()
+	run.Limits = machine.Limits{Memory: o.Memory}
 	_, _, err := prepare(o, run)
 	return err
 }
@@ -33,7 +34,14 @@ func prepare(o Options, run *machine.Run) (*source, *lower.Program, error) {
 	if len(problems) > 0 {
 		return src, nil, problems
 	}
-	u := universe.New(symbols.Table)
+	if problems := src.forbidden(); len(problems) > 0 {
+		return src, nil, problems
+	}
+	table, err := o.tables()
+	if err != nil {
+		return src, nil, err
+	}
+	u := universe.New(table)
 	info := universe.NewInfo()
 	pkg, problems := src.check(u, info)
 	if len(problems) > 0 {

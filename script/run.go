@@ -8,6 +8,7 @@ import (
 
 	"github.com/traefik/yaegi/interp"
 
+	"ketloom/script/fence"
 	"ketloom/script/lower"
 	"ketloom/script/machine"
 )
@@ -15,19 +16,32 @@ import (
 // Run checks a script and runs it until it ends.
 //
 // The error is Problems if the script was not run, an *ExitError if it ended
-// with a code other than zero, a *PanicError if it panicked, and ctx.Err(),
-// wrapped, if it was stopped. When ctx is done the script is stopped at once:
+// with a code other than zero, a *PanicError if it panicked, a *LimitError if it
+// reached Options.Time or Options.Steps, and ctx.Err(), wrapped, if it was
+// stopped. When ctx is done the script is stopped at once:
 // no further statement of it is executed. A call into compiled code that does
 // not watch a context goes on in the background; what it returns is dropped.
 func Run(ctx context.Context, o Options) error {
 	o = o.filled()
 	run := machine.New(machine.Streams{In: o.Stdin, Out: o.Stdout, Err: o.Stderr}, append([]string{o.Path}, o.Args...))
 	defer run.Close()
+	files, err := fence.New(fence.Options{Folder: o.Root, NoFiles: o.NoFiles, Read: o.Read, Write: o.Write, Env: o.Env})
+	if err != nil {
+		return fmt.Errorf("script: %w", err)
+	}
+	defer files.Close()
+	run.Fence, run.Return, run.Quiet = files, o.Return, o.Quiet
+	run.Limits = machine.Limits{Steps: o.Steps, Memory: o.Memory, Placed: o.Time > 0}
 	src, p, err := prepare(o, run)
 	if err != nil {
 		return err
 	}
-	return execute(ctx, run, src, p)
+	if o.Time > 0 {
+		var cancel context.CancelFunc
+		ctx, cancel = context.WithTimeoutCause(ctx, o.Time, errTime)
+		defer cancel()
+	}
+	return execute(ctx, run, src, p, o)
 }
 
 func (o Options) filled() Options {
@@ -37,6 +51,9 @@ func (o Options) filled() Options {
 	if o.Stderr == nil {
 		o.Stderr = io.Discard
 	}
+	if o.Memory == 0 {
+		o.Memory = DefaultMemory
+	}
 	if o.Path == "" {
 		o.Path = "script.go"
 	}
@@ -44,7 +61,7 @@ func (o Options) filled() Options {
 }
 
 // execute gives the lowered program to the interpreter.
-func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Program) error {
+func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Program, o Options) error {
 	h, err := newHalter(p)
 	if err != nil {
 		return src.internal(p, err)
@@ -63,11 +80,17 @@ func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Progra
 	}()
 	defer h.halt()
 	select {
-	case o := <-run.Ended():
-		return src.outcome(o.Code(), o.Panic())
+	case end := <-run.Ended():
+		if pos, over := end.Steps(); over {
+			return src.limit("steps", fmt.Sprintf("%d steps", o.Steps), pos)
+		}
+		return src.outcome(end.Code(), end.Panic())
 	case err := <-failed:
 		return src.early(run, p, err)
 	case <-ctx.Done():
+		if context.Cause(ctx) == errTime {
+			return src.limit("time", o.Time.String(), run.At())
+		}
 		return fmt.Errorf("script: stopped: %w", context.Cause(ctx))
 	}
 }

@@ -70,7 +70,8 @@ func (f *fn) arithmetic(a string, op token.Token, b string, t types.Type, y ast.
 	}
 	s := "(" + a + " " + op.String() + " " + b + ")"
 	if info&types.IsString != 0 {
-		return f.atomOf(s, f.text(t))
+		s = f.atomOf(s, f.text(t))
+		f.bounded("len("+s+")", reflect.TypeFor[byte]())
 	}
 	return s
 }

@@ -114,9 +114,9 @@ func (f *fn) appendTo(e *ast.CallExpr) string {
 		} else {
 			y = f.orderAs(e.Args[1], at)
 		}
-		name := f.c.once("append "+f.text(t)+"|"+f.text(at), func() string { return f.c.symbol("A", appendFunc(f.form(t), f.form(at))) })
+		name := f.c.once("append "+f.text(t)+"|"+f.text(at), func() string { return f.c.symbol("A", f.c.appendFunc(f.form(t), f.form(at))) })
 		s := f.atomOf(x(), f.text(t))
-		f.line("%s = %s(%s, %s)", r, name, s, f.atomOf(y(), f.text(at)))
+		f.line("%s = %s(%d, %s, %s)", r, name, e.Pos(), s, f.atomOf(y(), f.text(at)))
 		return r
 	}
 	var values []late
@@ -129,27 +129,30 @@ func (f *fn) appendTo(e *ast.CallExpr) string {
 	}
 	if len(values) == 1 && f.form(t).PkgPath() == "" && f.form(elem).Kind() != reflect.Func {
 		v := f.atomOf(values[0](), f.text(elem))
+		f.bounded("len("+s+")", f.form(elem))
 		f.line("%s = append(%s, %s)", r, s, v)
 		return r
 	}
 	list := f.sliceOf(values, types.NewSlice(elem))
 	name := f.c.once("append "+f.text(t)+"|[]"+f.text(elem), func() string {
-		return f.c.symbol("A", appendFunc(f.form(t), reflect.SliceOf(f.form(elem))))
+		return f.c.symbol("A", f.c.appendFunc(f.form(t), reflect.SliceOf(f.form(elem))))
 	})
-	f.line("%s = %s(%s, %s)", r, name, s, list)
+	f.line("%s = %s(%d, %s, %s)", r, name, e.Pos(), s, list)
 	return r
 }
 
-func appendFunc(t, from reflect.Type) reflect.Value {
-	return reflect.MakeFunc(reflect.FuncOf([]reflect.Type{t, from}, []reflect.Type{t}, false), func(in []reflect.Value) []reflect.Value {
-		y := in[1]
+func (c *compiler) appendFunc(t, from reflect.Type) reflect.Value {
+	run := c.in.Run
+	return reflect.MakeFunc(reflect.FuncOf([]reflect.Type{reflect.TypeFor[int](), t, from}, []reflect.Type{t}, false), func(in []reflect.Value) []reflect.Value {
+		x, y := in[1], in[2]
+		run.Allow(int(in[0].Int()), x.Len()+y.Len(), int(t.Elem().Size()))
 		if y.Kind() == reflect.String {
 			y = y.Convert(reflect.SliceOf(t.Elem()))
 		}
 		if y.Type() != t {
 			y = y.Convert(t)
 		}
-		return []reflect.Value{reflect.AppendSlice(in[0], y)}
+		return []reflect.Value{reflect.AppendSlice(x, y)}
 	})
 }
 
@@ -223,13 +226,16 @@ func (c *compiler) makeFunc(form reflect.Type) reflect.Value {
 			if room < n || room > limit {
 				machine.Make(pos, "cap")
 			}
+			run.Allow(pos, room, int(form.Elem().Size()))
 			return []reflect.Value{reflect.MakeSlice(form, n, room)}
 		case reflect.Map:
+			run.Allow(pos, n, int(form.Key().Size()+form.Elem().Size()))
 			return []reflect.Value{reflect.MakeMapWithSize(form, max(n, 0))}
 		}
 		if n < 0 {
 			machine.Throw(token.Pos(pos), machine.Fault("makechan: size out of range"))
 		}
+		run.Allow(pos, n, int(form.Elem().Size()))
 		plain := reflect.ChanOf(reflect.BothDir, form.Elem())
 		return []reflect.Value{reflect.MakeChan(plain, n).Convert(form)}
 	})

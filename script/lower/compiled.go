@@ -46,7 +46,20 @@ func (f *fn) compiledFunc(n ast.Node, obj *types.Func) reflect.Value {
 	if !ok {
 		f.refuse(n, "%s is not available in a script", obj.FullName())
 	}
-	return v
+	return f.c.in.Run.Guard(path+"."+obj.Name(), v, 0)
+}
+
+// compiledMethodOf finds a method of the compiled type form, or what the run has
+// in its place.
+func (f *fn) compiledMethodOf(n ast.Node, form reflect.Type, method *types.Func) reflect.Value {
+	m, ok := form.MethodByName(method.Name())
+	if !ok {
+		f.refuse(n, "the method %s is not available in a script", method.Name())
+	}
+	if why, ok := unavailable[machine.MethodName(form, method.Name())]; ok {
+		f.refuse(n, "%s is not available in a script: %s", method.FullName(), why)
+	}
+	return f.c.in.Run.Guard(machine.MethodName(form, method.Name()), m.Func, 1)
 }
 
 // callPure calls a function that needs neither conversions nor a place.
@@ -59,15 +72,8 @@ func (f *fn) callPure(e *ast.CallExpr, obj *types.Func, target reflect.Value) *p
 
 // callCompiledMethod calls a method of a compiled type.
 func (f *fn) callCompiledMethod(e *ast.CallExpr, base receiver, method *types.Func) *prepared {
-	form := f.form(base.typ)
-	m, ok := form.MethodByName(method.Name())
-	if !ok {
-		f.refuse(e, "the method %s is not available in a script", method.Name())
-	}
-	if why, ok := unavailable[method.FullName()]; ok {
-		f.refuse(e, "%s is not available in a script: %s", method.FullName(), why)
-	}
-	return f.site(e, method.Signature(), &base, m.Func)
+	target := f.compiledMethodOf(e, f.form(base.typ), method)
+	return f.site(e, method.Signature(), &base, target)
 }
 
 // site makes the symbol for one call of compiled code. It takes the arguments

@@ -59,6 +59,7 @@ type compiler struct {
 	last     func()                // emits setup and main, after everything else
 	texts    map[reflect.Type]string
 	met      map[string]bool // types whose parts are known at run time
+	methods  sync.Map        // what the run has in place of compiled methods
 	mutex    sync.Mutex      // guards the universe while the script runs
 }
 

@@ -1,6 +1,7 @@
 package lower
 
 import (
+	"fmt"
 	"go/token"
 	"go/types"
 	"reflect"
@@ -29,17 +30,17 @@ func (f *fn) dynamic(t types.Type, name string, sig *types.Signature) string {
 			if in[1].IsNil() {
 				machine.Nil(int(pos))
 			}
-			return invoke(machine.Plain(in[1].Interface()), name, in[2:], out)
+			return f.c.invoke(machine.Plain(in[1].Interface()), name, in[2:], out)
 		}))
 	})
 }
 
 // invoke calls a method of a compiled or a script's value.
-func invoke(x any, name string, args []reflect.Value, out []reflect.Type) []reflect.Value {
+func (c *compiler) invoke(x any, name string, args []reflect.Value, out []reflect.Type) []reflect.Value {
 	if v, ok := x.(machine.Value); ok {
 		return v.Call(name, args)
 	}
-	m := reflect.ValueOf(x).MethodByName(name)
+	m := c.boundMethod(reflect.ValueOf(x), name)
 	for i, a := range args {
 		if want := m.Type().In(i); a.Type() != want {
 			args[i] = fitted(a, want)
@@ -72,4 +73,43 @@ func fitted(v reflect.Value, to reflect.Type) reflect.Value {
 		return functionConverter(v.Type(), to)(v)
 	}
 	return v.Convert(to)
+}
+
+// boundMethod is a method of a compiled value, or what the run has in its place.
+func (c *compiler) boundMethod(x reflect.Value, name string) reflect.Value {
+	bound := x.MethodByName(name)
+	target, instead := c.methodOf(x.Type(), name)
+	if !instead {
+		return bound
+	}
+	return reflect.MakeFunc(bound.Type(), func(in []reflect.Value) []reflect.Value {
+		return target.Call(append([]reflect.Value{x}, in...))
+	})
+}
+
+// found is a method that was looked up before.
+type found struct {
+	target  reflect.Value
+	instead bool
+}
+
+// methodOf looks up what the run has in place of a compiled method.
+func (c *compiler) methodOf(t reflect.Type, name string) (reflect.Value, bool) {
+	key := struct {
+		t    reflect.Type
+		name string
+	}{t, name}
+	if f, ok := c.methods.Load(key); ok {
+		return f.(found).target, f.(found).instead
+	}
+	full := machine.MethodName(t, name)
+	if why, ok := unavailable[full]; ok {
+		panic(fmt.Sprintf("%s is not available in a script: %s", full, why))
+	}
+	var f found
+	if m, ok := t.MethodByName(name); ok {
+		f.target, f.instead = c.in.Run.Guarded(full, m.Func, 1)
+	}
+	c.methods.Store(key, f)
+	return f.target, f.instead
 }

@@ -240,6 +240,7 @@ func (f *fn) emit(s signature) string {
 	}
 	entry := f.buf.String()
 	f.buf.Reset()
+	f.count()
 	switch {
 	case defers(s.body):
 		f.deferring(s)

@@ -76,6 +76,7 @@ func (f *fn) loop(l *loop, hasPost bool, body *ast.BlockStmt, condition func() s
 			}
 		}
 		f.release(mark)
+		f.count()
 		head()
 		f.turn(l, once, body)
 		post()
@@ -291,6 +292,7 @@ func (f *fn) labeled(s *ast.LabeledStmt) {
 		f.buf.WriteString(f.gotoLabel(s.Label) + ":\n")
 		t := f.hold("int")
 		f.line("%s = 0", t)
+		f.count()
 	}
 	f.label = s.Label.Name
 	f.stmt(s.Stmt)

@@ -59,11 +59,8 @@ func (f *fn) methodFunction(base receiver, method *types.Func, n ast.Node) (stri
 	sig := f.typ(method.Type()).(*types.Signature)
 	sig = types.NewSignatureType(nil, nil, nil, sig.Params(), sig.Results(), sig.Variadic())
 	form := f.form(base.typ)
-	m, ok := form.MethodByName(method.Name())
-	if !ok {
-		f.refuse(n, "the method %s is not available in a script", method.Name())
-	}
-	return f.c.symbol("M", f.c.compiledMethod(m.Func, form, f.c.funcForm(sig, f.pos), n.Pos())) + "(", sig
+	m := f.compiledMethodOf(n, form, method)
+	return f.c.symbol("M", f.c.compiledMethod(m, form, f.c.funcForm(sig, f.pos), n.Pos())) + "(", sig
 }
 
 // compiledMethod is a compiled method as a function of its receiver.

@@ -30,6 +30,8 @@ func (c *compiler) support() {
 		"Recover":   func(d *machine.Defers) any { return d.Recover() },
 		"Go":        run.Go,
 		"Main":      run.Main,
+		"Turn":      run.Turn,
+		"Allow":     run.Allow,
 		"Any":       (*any)(nil),
 		"Error":     (*error)(nil),
 	} {

@@ -148,6 +148,7 @@ func (f *fn) rangeMap(s *ast.RangeStmt, l *loop, t types.Type, u *types.Map) {
 	}
 	text, _ := f.apart(func() string {
 		f.line("for %s, %s := range %s {", k, v, m)
+		f.count()
 		f.set(s, typedValue{k, f.typ(u.Key())}, typedValue{v, f.typ(u.Elem())})
 		f.turn(l, once, s.Body)
 		f.line("}")
@@ -212,6 +213,7 @@ func (f *fn) yieldBody(s *ast.RangeStmt, sig *types.Signature) string {
 		values = append(values, typedValue{name, t})
 	}
 	f.line("if %s != 0 { h.Continued(%d) }", f.use(f.yield.control), s.Pos())
+	f.count()
 	f.set(s, values...)
 	f.block(s.Body.List)
 	f.line("return true")

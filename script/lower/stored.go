@@ -26,6 +26,16 @@ func (c *compiler) form(t types.Type, pos token.Pos) reflect.Type {
 	return r
 }
 
+// arrayForm refuses arrays that are larger than what a script may allocate.
+func (c *compiler) arrayForm(t *types.Array, pos token.Pos) reflect.Type {
+	elem := c.form(t.Elem(), pos)
+	if most := min(c.in.Run.Elements(max(int(elem.Size()), 1)), 1<<40); t.Len() > most {
+		c.refuse(pos, "an array of %d elements of %d bytes is more than a script may allocate at once", t.Len(), elem.Size())
+		return reflect.ArrayOf(1, elem)
+	}
+	return reflect.ArrayOf(int(t.Len()), elem)
+}
+
 func (c *compiler) makeForm(t types.Type, pos token.Pos) reflect.Type {
 	switch t := types.Unalias(t).(type) {
 	case *types.Basic:
@@ -37,7 +47,7 @@ func (c *compiler) makeForm(t types.Type, pos token.Pos) reflect.Type {
 	case *types.Slice:
 		return reflect.SliceOf(c.form(t.Elem(), pos))
 	case *types.Array:
-		return reflect.ArrayOf(int(t.Len()), c.form(t.Elem(), pos))
+		return c.arrayForm(t, pos)
 	case *types.Map:
 		key := c.form(t.Key(), pos)
 		if holdsMethods(t.Key()) {

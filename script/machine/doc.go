@@ -11,5 +11,5 @@
 // as a Value, which carries the checked type beside the stored form, and
 // leaves it through Assert.
 //
-// The package may import nothing of Ketloom.
+// The package may import script/fence and script/progress.
 package machine

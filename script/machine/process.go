@@ -74,6 +74,14 @@ func (r *Run) newProcess() *process {
 	for key, f := range r.others(p) {
 		p.replace[key] = reflect.ValueOf(f)
 	}
+	for key, f := range r.hosted() {
+		p.replace[key] = reflect.ValueOf(f)
+	}
+	if r.Fence != nil {
+		for key, f := range r.Fence.Functions() {
+			p.replace[key] = reflect.ValueOf(f)
+		}
+	}
 	p.replace["os.Args"] = reflect.ValueOf(&r.Args).Elem()
 	usage := p.flags.Usage
 	p.replace["flag.Usage"] = reflect.ValueOf(&usage).Elem()

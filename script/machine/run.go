@@ -1,10 +1,14 @@
 package machine
 
 import (
+	"go/token"
 	"go/types"
 	"io"
 	"os"
 	"sync"
+	"sync/atomic"
+
+	"ketloom/script/fence"
 )
 
 // Streams are the standard streams of a script.
@@ -28,6 +32,16 @@ type Run struct {
 	gates   []*gate
 	own     map[uint64]bool // numbers of the goroutines that the script started
 	process *process
+	// Fence judges paths; nil judges none, which is for scripts that are only
+	// checked. It, Limits, Return and Quiet are set before the script is lowered.
+	Fence  *fence.Fence
+	Limits Limits
+	// Return takes what the script hands to its host; nil drops it.
+	Return func(name string, value any)
+	// Quiet keeps progress off the terminal.
+	Quiet bool
+	turns atomic.Int64
+	at    atomic.Int64
 	// Compiled tells objects of compiled packages from those of the script.
 	Compiled func(types.Object) bool
 }
@@ -35,6 +49,8 @@ type Run struct {
 type outcome struct {
 	code  int
 	panic *Thrown
+	steps bool // at the limit of steps
+	pos   token.Pos
 }
 
 // New returns the process for one run. args[0] is the name of the script.

@@ -13,6 +13,7 @@ var Ketloom = []string{
 	"ketloom/operator",
 	"ketloom/operator/matrix",
 	"ketloom/operator/model",
+	"ketloom/script/host",
 	"ketloom/script/progress",
 	"ketloom/script/report",
 	"ketloom/script/sweep",
