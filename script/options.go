@@ -33,7 +33,7 @@ type Options struct {
 	// temporary ones.
 	NoFiles bool
 	// Read and Write are further files and folders; what may be written may be
-	// read. They must exist.
+	// read. Those to read must exist.
 	Read, Write []string
 	// Env shows the script the environment of the program. Without it every
 	// variable is empty.

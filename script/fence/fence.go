@@ -33,7 +33,7 @@ type Options struct {
 	Folder string
 	// NoFiles closes Folder; relative paths still start there.
 	NoFiles bool
-	// Read and Write are further files and folders.
+	// Read and Write are further files and folders. Those to read must exist.
 	Read, Write []string
 	// Env shows the environment.
 	Env bool
@@ -53,7 +53,7 @@ type Fence struct {
 type area struct {
 	path   string // without links
 	access Access
-	root   *os.Root // of path, or of the folder that holds it
+	root   *os.Root // of path, or of the nearest folder that holds it
 	rel    string   // of path in root
 }
 
@@ -87,24 +87,30 @@ func New(o Options) (*Fence, error) {
 	return f, nil
 }
 
-// add opens an area.
+// add opens an area. What may be written need not exist.
 func (f *Fence) add(path string, access Access) error {
 	abs, err := filepath.Abs(path)
 	if err != nil {
 		return fmt.Errorf("fence: %w", err)
 	}
-	real, err := filepath.EvalSymlinks(abs)
+	real, err := f.real(abs, true)
 	if err != nil {
+		return fmt.Errorf("fence: %s: %w", path, err)
+	}
+	if _, err := os.Stat(real); err != nil && access == Read {
 		return fmt.Errorf("fence: %w; give a file or folder that exists", err)
 	}
-	info, err := os.Stat(real)
-	if err != nil {
-		return fmt.Errorf("fence: %w", err)
-	}
-	a := &area{path: real, access: access, rel: "."}
 	folder := real
-	if !info.IsDir() {
-		folder, a.rel = filepath.Dir(real), filepath.Base(real)
+	for {
+		info, err := os.Stat(folder)
+		if err == nil && info.IsDir() || folder == filepath.Dir(folder) {
+			break
+		}
+		folder = filepath.Dir(folder)
+	}
+	a := &area{path: real, access: access}
+	if a.rel, err = filepath.Rel(folder, real); err != nil {
+		return fmt.Errorf("fence: %w", err)
 	}
 	if a.root, err = os.OpenRoot(folder); err != nil {
 		return fmt.Errorf("fence: %w", err)

@@ -109,13 +109,11 @@ func (f *Fence) find(path string, access Access, last bool) (spot, error) {
 		if a.access < access || !within(real, a.path) {
 			continue
 		}
-		rel := a.rel
-		if real != a.path {
-			if rel, err = filepath.Rel(a.path, real); err != nil {
-				return spot{}, err
-			}
+		rel, err := filepath.Rel(a.path, real)
+		if err != nil {
+			return spot{}, err
 		}
-		return spot{a.root, rel, real}, nil
+		return spot{a.root, filepath.Join(a.rel, rel), real}, nil
 	}
 	return spot{}, &Denied{real, access}
 }

@@ -7,6 +7,7 @@ import (
 	"os"
 	"os/exec"
 	"strings"
+	"syscall"
 	"testing"
 )
 
@@ -55,7 +56,18 @@ func TestCommands(t *testing.T) {
 		{"check testdata/hello.go testdata/wrong.go", exitProblem, "", "undefined: y"},
 		{"check", exitUsage, "", "wants a script"},
 		{"run", exitUsage, "", "wants a script"},
-		{"run -x", exitUsage, "", "wants a script"},
+		{"run -x", exitUsage, "", "flag provided but not defined: -x"},
+		{"run -quiet", exitUsage, "", "wants a script"},
+		{"run -allow all testdata/hello.go", exitUsage, "", "read=PATH, write=PATH or env"},
+		{"run -allow read=testdata/none testdata/hello.go", exitProblem, "", "no such file"},
+		{"run -root testdata/none testdata/hello.go", exitProblem, "", "no such file"},
+		{"run -time -1s testdata/hello.go", exitUsage, "", "positive"},
+		{"run -compiled -steps 5 testdata/hello.go", exitUsage, "", "-steps cannot be kept"},
+		{"run -time 150ms testdata/endless.go", exitLimit, "ready\n", "testdata/endless.go:7: stopped: the script took more than its limit of 150ms"},
+		{"run -steps 1000 testdata/endless.go", exitLimit, "ready\n", "testdata/endless.go:7: stopped: the script took more than its limit of 1000 steps"},
+		{"run -memory 0.001 testdata/large.go", exitPanic, "", "testdata/large.go:6: panic: out of memory: 1000000 elements of 8 bytes"},
+		{"run -memory 0 testdata/large.go", 0, "1000000\n", ""},
+		{"run -quiet testdata/hello.go -- -n 1", 0, "hello 0 []\n", ""},
 		{"sing", exitUsage, "", "no command"},
 		{"", exitUsage, "", "ketloom run FILE-OR-FOLDER"},
 		{"help", 0, "Examples", ""},
@@ -87,11 +99,13 @@ func TestCommands(t *testing.T) {
 func TestInterrupt(t *testing.T) {
 	for _, c := range []struct {
 		script string
+		signal os.Signal
 		code   int
 		last   string
 	}{
-		{"testdata/wait.go", 0, "stopped by itself"},
-		{"testdata/endless.go", exitInterrupted, ""},
+		{"testdata/wait.go", os.Interrupt, 0, "stopped by itself"},
+		{"testdata/endless.go", os.Interrupt, exitInterrupted, ""},
+		{"testdata/endless.go", syscall.SIGTERM, exitInterrupted, ""},
 	} {
 		cmd := invocation("run", c.script)
 		out, err := cmd.StdoutPipe()
@@ -105,7 +119,7 @@ func TestInterrupt(t *testing.T) {
 		if !lines.Scan() || lines.Text() != "ready" {
 			t.Fatalf("%s: wrote %q", c.script, lines.Text())
 		}
-		if err := cmd.Process.Signal(os.Interrupt); err != nil {
+		if err := cmd.Process.Signal(c.signal); err != nil {
 			t.Skipf("no interrupts here: %v", err)
 		}
 		last := ""

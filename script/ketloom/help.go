@@ -28,7 +28,7 @@ Examples
   ketloom doc basis
 `
 
-const helpRun = `ketloom run FILE-OR-FOLDER [-- ARGUMENTS]
+const helpRun = `ketloom run [FLAGS] FILE-OR-FOLDER [-- ARGUMENTS]
 
 Checks a script as the compiler does, then runs it. A script is a package main:
 one Go file, or a folder of them. Everything after -- is given to the script as
@@ -38,15 +38,35 @@ taken for one of ketloom.
 What the interpreter cannot compute exactly as a compiled program would is
 refused before anything runs, with its line and with what to write instead.
 
+A script reads and writes files below the current folder only, and reads those
+beside it. It sees no environment, starts no programs and has no network.
+
+Flags, before the script
+  -root FOLDER        make FOLDER the script's current folder, and its only one
+  -allow read=PATH    let it read a file or folder elsewhere; may be repeated
+  -allow write=PATH   let it write there, too
+  -allow env          show it the environment
+  -time DURATION      stop it after that time, such as 90s or 2h
+  -steps NUMBER       stop it after so many turns of loops and calls
+  -memory GIB         largest single allocation, 8 if not given; 0 for no limit
+  -quiet              draw no progress
+  -json               write a line of JSON to standard error when the script is
+                      started, for each reason to refuse it, and when it ended
+  -watch              run it again whenever it is saved, until Ctrl-C
+  -compiled           build it with the go command and run that, unfenced; the
+                      script has to lie in a module that requires ketloom
+
 Ctrl-C reaches the script first: signal.NotifyContext(context.Background(),
 os.Interrupt) gives it a context that ends. A script that is still running 0.7 s
-later is stopped; a second Ctrl-C stops it at once.
+later is stopped; a second Ctrl-C stops it at once. A request of the system to
+end (SIGTERM) is taken in the same way.
 
 Exit codes
     0  the script ended well
     1  the script has errors and was not run, or cannot be read
     2  the script panicked; the message has its file and line
    64  the command line is wrong
+  124  stopped at -time or -steps
   130  stopped by Ctrl-C
   any other code is the script's own, from os.Exit
 
@@ -55,6 +75,9 @@ Examples
   ketloom run chain.go
   ketloom run chain.go -- -sites 12
   ketloom run ./study > study.txt
+  ketloom run -root out chain.go -- -sites 12
+  ketloom run -allow read=/data/couplings.csv -time 10m chain.go
+  ketloom run -watch -quiet chain.go
 `
 
 const helpCheck = `ketloom check FILE-OR-FOLDER ...

@@ -19,7 +19,8 @@ const (
 	exitProblem     = 1   // the script is wrong or cannot be read
 	exitPanic       = 2   // the script panicked, as with a compiled program
 	exitUsage       = 64  // the command line is wrong
-	exitInterrupted = 130 // stopped by Ctrl-C
+	exitLimit       = 124 // stopped at a limit of time or steps
+	exitInterrupted = 130 // stopped by Ctrl-C or a request to end
 )
 
 func main() { os.Exit(command(os.Args[1:])) }

@@ -5,70 +5,76 @@ import (
 	"errors"
 	"fmt"
 	"os"
-	"os/signal"
-	"strings"
 	"time"
 
 	"ketloom/lanczos/archive"
 	"ketloom/script"
 )
 
-// grace is the time that a script has to end by itself after an interrupt.
-const grace = 700 * time.Millisecond
-
 // run is the command of that name.
 func run(args []string) int {
 	if wantsHelp(args) {
 		return help([]string{"run"})
 	}
-	if len(args) == 0 || strings.HasPrefix(args[0], "-") {
-		fmt.Fprintln(os.Stderr, "ketloom: run wants a script first: ketloom run FILE-OR-FOLDER [-- ARGUMENTS]")
+	f, err := parseRun(args)
+	if err != nil {
+		fmt.Fprintf(os.Stderr, "ketloom: run: %v\n", err)
 		return exitUsage
-	}
-	rest := args[1:]
-	if len(rest) > 0 && rest[0] == "--" {
-		rest = rest[1:]
 	}
 	ctx, stop := interruptible()
 	defer stop()
-	err := script.Run(ctx, script.Options{Path: args[0], Args: rest, Stdin: os.Stdin, Stdout: os.Stdout, Stderr: os.Stderr})
+	if f.watch {
+		return watch(ctx, f)
+	}
+	return once(ctx, f)
+}
+
+// once runs the script and returns the exit code of the command.
+func once(ctx context.Context, f *runFlags) int {
+	begun := time.Now()
+	log := runLog{on: f.json}
+	log.started(f)
+	err := f.execute(ctx)
+	code := codeOf(ctx, err)
+	log.ended(code, err, time.Since(begun))
+	if err != nil && !f.json && !silent(ctx, err) {
+		fmt.Fprintln(os.Stderr, err)
+	}
+	return code
+}
+
+// execute runs the script, interpreted or compiled.
+func (f *runFlags) execute(ctx context.Context) error {
+	if f.compiled {
+		return runCompiled(ctx, f)
+	}
+	err := script.Run(ctx, f.options)
 	archive.DiscardOpen() // a call into compiled code may still be writing
-	return exitCode(ctx, err)
+	return err
 }
 
-// interruptible returns a context that ends some time after the first
-// interrupt, so that a script can end by itself, and at once with the second.
-func interruptible() (context.Context, func()) {
-	ctx, cancel := context.WithCancel(context.Background())
-	signals := make(chan os.Signal, 2)
-	signal.Notify(signals, os.Interrupt)
-	go func() {
-		<-signals
-		select {
-		case <-signals:
-		case <-time.After(grace):
-		}
-		cancel()
-	}()
-	return ctx, func() { signal.Stop(signals) }
-}
-
-// exitCode prints the error and chooses the code.
-func exitCode(ctx context.Context, err error) int {
-	if err == nil {
-		return exitOK
-	}
+// codeOf chooses the exit code.
+func codeOf(ctx context.Context, err error) int {
 	var exit *script.ExitError
-	if errors.As(err, &exit) {
+	var panicked *script.PanicError
+	var limit *script.LimitError
+	switch {
+	case err == nil:
+		return exitOK
+	case errors.As(err, &exit):
 		return exit.Code
-	}
-	if ctx.Err() != nil {
+	case errors.As(err, &panicked):
+		return exitPanic
+	case errors.As(err, &limit):
+		return exitLimit
+	case ctx.Err() != nil:
 		return exitInterrupted
 	}
-	fmt.Fprintln(os.Stderr, err)
-	var p *script.PanicError
-	if errors.As(err, &p) {
-		return exitPanic
-	}
 	return exitProblem
+}
+
+// silent says that the code alone tells how the script ended.
+func silent(ctx context.Context, err error) bool {
+	var exit *script.ExitError
+	return errors.As(err, &exit) || codeOf(ctx, err) == exitInterrupted
 }

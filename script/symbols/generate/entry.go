@@ -15,6 +15,7 @@ type writer struct {
 	imports  map[string]string // path -> name in the file
 	entries  bytes.Buffer
 	wrappers bytes.Buffer
+	rune     string // the type that marks an untyped rune
 }
 
 // local returns the name under which path is imported in the generated file.
@@ -82,7 +83,7 @@ func (w *writer) exact(basic *types.Basic, v constant.Value) string {
 	case types.UntypedInt:
 		return signed(v, "INT")
 	case types.UntypedRune:
-		return fmt.Sprintf("Rune{%s}", signed(v, "INT"))
+		return fmt.Sprintf("%s{%s}", w.rune, signed(v, "INT"))
 	case types.UntypedFloat:
 		return "constant.ToFloat(" + signed(constant.ToFloat(v), "FLOAT") + ")"
 	default:

@@ -1,6 +1,16 @@
-// Command generate writes the symbol tables of package symbols: it reads the
-// lists in packages.go, type-checks each package from source and writes one Go
-// file a package. It needs the Go tool, for the location of the packages.
+// Command generate writes symbol tables, through which scripts reach compiled
+// packages. It needs the Go tool, for the location of the packages.
+//
+// For the program of a host, which embeds package script, it writes one file
+// with the tables of the packages named, to be called in the host's module:
+//
+//	go run ketloom/script/symbols/generate -package example.org/host/physics -out symbols_physics.go
+//
+// The file belongs to the package that -name says (main, or that of the
+// go:generate line) and declares the variable that -var says (scriptPackages), for
+// Options.Packages of package script. -package may be repeated.
+//
+// For package symbols itself it reads the lists in packages.go and writes one file a package:
 //
 //	go generate ./script/symbols
 //
@@ -10,6 +20,7 @@ package main
 
 import (
 	"bytes"
+	"cmp"
 	"flag"
 	"fmt"
 	"os"
@@ -20,8 +31,22 @@ import (
 func main() {
 	check := flag.Bool("check", false, "compare instead of writing")
 	dir := flag.String("dir", ".", "folder of package symbols")
+	h := hostFile{}
+	flag.Func("package", "import `path` of a package of a host; may be repeated", func(path string) error {
+		h.paths = append(h.paths, path)
+		return nil
+	})
+	flag.StringVar(&h.out, "out", "", "`file` for the tables of a host")
+	flag.StringVar(&h.name, "name", cmp.Or(os.Getenv("GOPACKAGE"), "main"), "package of that file")
+	flag.StringVar(&h.variable, "var", "scriptPackages", "variable in that file")
 	flag.Parse()
-	if err := run(*dir, *check); err != nil {
+	err := error(nil)
+	if len(h.paths) > 0 || h.out != "" {
+		err = h.run(*check)
+	} else {
+		err = run(*dir, *check)
+	}
+	if err != nil {
 		fmt.Fprintln(os.Stderr, err)
 		os.Exit(1)
 	}
