@@ -11,8 +11,9 @@ import (
 )
 
 // split writes a product state as a sum of products of a state of the part with
-// one of the rest, |c⟩ = Σ factor·|part⟩|rest⟩. It is called by many goroutines.
-type split func(c uint64, emit func(part, rest uint64, factor float64))
+// one of the rest, |c⟩ = Σ factor·|part⟩|rest⟩, until emit returns false. It is
+// called by many goroutines.
+type split func(c uint64, emit func(part, rest uint64, factor float64) bool)
 
 // cut is a division of states into part and rest. Its matrix has a row for every
 // configuration of the part and a column for every state and configuration of
@@ -28,6 +29,7 @@ type cut struct {
 	number  int            // of particles that every state must have, or -1
 	fixed   []basis.Charge // charges that label blocks
 	maybe   []basis.Charge // charges that do where all states conserve them
+	ways    float64        // in which a product state is split, at most
 	sites   []int          // whose lowest levels count in the charges
 	options Options
 }
@@ -51,8 +53,17 @@ func (k *cut) spectrum(ctx context.Context) (*Spectrum, error) {
 	return &Spectrum{Names: l.labels.names, Blocks: blocks, Trust: -math.Log(floor)}, nil
 }
 
+// A worker unfolds mostBasisStates basis states at a time, fewer where that makes
+// more than mostSplits products of part and rest.
+const (
+	mostBasisStates = 512
+	mostSplits      = 1 << 16
+)
+
 // grain is the number of basis states that a worker unfolds at a time.
-const grain = 512
+func (k *cut) grain(s State) int {
+	return int(max(1, min(mostBasisStates, mostSplits/(k.ways*float64(s.basis.GroupOrder())))))
+}
 
 // sweep calls work with pieces of the basis states of all states, in parallel.
 func (k *cut) sweep(ctx context.Context, what string, work func(worker, state, from, to int)) error {
@@ -64,7 +75,7 @@ func (k *cut) sweep(ctx context.Context, what string, work func(worker, state, f
 	for n, s := range k.states {
 		var next atomic.Int64
 		var wg sync.WaitGroup
-		length := s.basis.Len()
+		length, grain := s.basis.Len(), k.grain(s)
 		for w := range k.options.Workers {
 			wg.Go(func() {
 				for ctx.Err() == nil {
@@ -158,10 +169,11 @@ func (v *surveyor) look(state, from, to int) {
 	if v.crowded() {
 		return
 	}
-	columns := v.columns[state]
-	emit := func(a, b uint64, factor float64) {
+	columns, most := v.columns[state], v.cut.most()
+	emit := func(a, b uint64, factor float64) bool {
 		v.rows.add(a, 0)
 		columns.add(b, a)
+		return v.rows.count+columns.count <= most
 	}
 	v.cut.states[state].each(from, to, func(c uint64, z complex128) {
 		v.check(state, basis.Configuration(c))

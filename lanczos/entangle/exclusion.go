@@ -42,7 +42,9 @@ const (
 	// MostWindows is the largest number of admissible fillings of Range-1
 	// consecutive orbitals.
 	MostWindows = 4096
-	// MostSteps is the largest number of steps of a count.
+	// MostSteps is the largest number of steps of a count: fillings of one more
+	// orbital, by what was filled before. They take seconds, or up to a minute where
+	// charges make many sectors.
 	MostSteps = 2e8
 	// MostListed is the largest number of configurations that are listed.
 	MostListed = 1 << 20
@@ -109,7 +111,8 @@ func (e Exclusion) Count(particles int) (uint64, error) {
 // that the ring can begin with, so that configurations are counted, not visited.
 //
 // Errors: an impossible rule, charges for another number of orbitals, more than
-// MostWindows windows or MostSteps steps, a number that 64 bits do not hold.
+// MostWindows windows or MostSteps steps, a number that 64 bits do not hold, be it
+// one of beginnings that the rule does not let close around the ring.
 func (e Exclusion) BySector(particles int, charges []OrbitalCharge) ([]SectorCount, error) {
 	if err := e.check(particles, charges); err != nil {
 		return nil, err
@@ -217,20 +220,26 @@ func (c *counter) around(begin int) error {
 
 // extend fills one more orbital in every way that the rule allows.
 func (c *counter) extend(orbital int) error {
+	if c.steps += float64(len(c.ways)) * float64(c.rule.highest()+1); c.steps > MostSteps {
+		return fmt.Errorf("entangle: counting takes more than %g steps; give fewer charges, particles or orbitals", float64(MostSteps))
+	}
 	next := make(map[path]uint64, len(c.ways))
+	fills := c.rule.highest() + 1
+	sectors := make([]int, len(c.sectors)*fills) // after a fill, plus one; 0 where not known
 	for p, n := range c.ways {
 		for fill, window := range c.step[p.window] {
 			if window < 0 || p.particles+fill > c.particles {
 				continue
 			}
-			to := path{window, p.particles + fill, c.carried(p.sector, orbital, fill)}
+			sector := &sectors[p.sector*fills+fill]
+			if *sector == 0 {
+				*sector = 1 + c.carried(p.sector, orbital, fill)
+			}
+			to := path{window, p.particles + fill, *sector - 1}
 			if err := addTo(next, to, n); err != nil {
 				return err
 			}
 		}
-	}
-	if c.steps += float64(len(c.ways)); c.steps > MostSteps {
-		return fmt.Errorf("entangle: counting takes more than %g steps; give fewer charges, particles or orbitals", float64(MostSteps))
 	}
 	c.ways = next
 	return nil
@@ -276,7 +285,7 @@ func (c *counter) counts() []SectorCount {
 func addTo[K comparable](ways map[K]uint64, key K, n uint64) error {
 	total, carry := bits.Add64(ways[key], n, 0)
 	if carry != 0 {
-		return fmt.Errorf("entangle: more than 1.8e19 admissible configurations; 64 bits do not hold the number, give fewer particles or orbitals")
+		return fmt.Errorf("entangle: more than 1.8e19 configurations, open ends of the ring included; 64 bits do not hold the number, give fewer particles or orbitals")
 	}
 	ways[key] = total
 	return nil

@@ -120,6 +120,77 @@ func TestCountByEnumeration(t *testing.T) {
 	}
 }
 
+// Random rules, fillings and charges.
+func TestCountOfRandomRules(t *testing.T) {
+	r := rng(51)
+	for range 60 {
+		e := Exclusion{Most: 1 + r.IntN(3), Orbitals: 1 + r.IntN(7), Bosons: r.IntN(2) == 1}
+		e.Range = 1 + r.IntN(e.Orbitals)
+		q := OrbitalCharge{Modulus: r.IntN(4)}
+		for range e.Orbitals {
+			q.Values = append(q.Values, r.IntN(9)-4)
+		}
+		n := r.IntN(6)
+		want := map[int]uint64{}
+		for _, filled := range enumerated(e, n) {
+			value := 0
+			for j, k := range filled {
+				value += k * q.Values[j]
+			}
+			if q.Modulus > 0 {
+				value = (value%q.Modulus + q.Modulus) % q.Modulus
+			}
+			want[value]++
+		}
+		counts, err := e.BySector(n, []OrbitalCharge{q})
+		if err != nil || len(counts) != len(want) {
+			t.Errorf("%+v, %d particles: %v, want %v, %v", e, n, counts, want, err)
+		}
+		for _, c := range counts {
+			if want[c.Charges[0]] != c.Count {
+				t.Errorf("%+v, %d particles: %+v, want %v", e, n, c, want)
+			}
+		}
+	}
+}
+
+// Few configurations are found among many beginnings that do not close: those of
+// a full ring are one pattern in all places.
+func TestConfigurationsOfFullRings(t *testing.T) {
+	list, err := Exclusion{Most: 1, Range: 20, Orbitals: 300}.Configurations(15)
+	if err != nil || len(list) != 20 {
+		t.Fatalf("%d configurations, %v", len(list), err)
+	}
+	for i, filled := range list {
+		for j, n := range filled {
+			if (n == 1) != (j%20 == 19-i) {
+				t.Fatalf("configuration %d is %v", i, filled)
+			}
+		}
+	}
+	list, err = Exclusion{Most: 1, Range: 20, Orbitals: 300}.Configurations(16)
+	if err != nil || len(list) != 0 {
+		t.Errorf("%d configurations of too many particles, %v", len(list), err)
+	}
+}
+
+// The limit on steps counts every filling that is tried.
+func TestMostSteps(t *testing.T) {
+	e := Exclusion{Most: 3, Range: 1, Orbitals: 5, Bosons: true}
+	windows, err := e.windows()
+	if err != nil {
+		t.Fatal(err)
+	}
+	c := newCounter(e, 4, nil, windows)
+	if err := c.around(0); err != nil || c.steps != 4*(1+4+5+5+5) {
+		t.Errorf("%v steps, %v", c.steps, err)
+	}
+	c.steps = MostSteps - 10
+	if err := c.around(0); err == nil || !strings.Contains(err.Error(), "steps") {
+		t.Errorf("error %v", err)
+	}
+}
+
 func TestExclusionRefuses(t *testing.T) {
 	rule := Exclusion{Most: 1, Range: 3, Orbitals: 9}
 	for _, c := range []struct {

@@ -14,6 +14,9 @@ func (e Exclusion) Configurations(particles int) ([][]int, error) {
 	if count > MostListed {
 		return nil, fmt.Errorf("entangle: a list of %d configurations; at most %d are listed, count them instead", count, MostListed)
 	}
+	if count == 0 {
+		return nil, nil
+	}
 	l := lister{rule: e, filled: make([]int, e.Orbitals), list: make([][]int, 0, count)}
 	l.fill(0, particles)
 	return l.list, nil
@@ -24,9 +27,30 @@ type lister struct {
 	rule   Exclusion
 	filled []int
 	list   [][]int
+	dead   map[string]bool // beginnings that the rule does not let close
 }
 
 func (l *lister) fill(orbital, left int) {
+	window := l.rule.Range - 1
+	if orbital == window {
+		l.dead = map[string]bool{} // of the first window that is now complete
+	}
+	if orbital < window {
+		l.next(orbital, left)
+		return
+	}
+	key := keyOf(append([]int{orbital, left}, l.filled[orbital-window:orbital]...))
+	if l.dead[key] {
+		return
+	}
+	before := len(l.list)
+	l.next(orbital, left)
+	if len(l.list) == before {
+		l.dead[key] = true
+	}
+}
+
+func (l *lister) next(orbital, left int) {
 	if orbital == l.rule.Orbitals {
 		if left == 0 && l.closes() {
 			l.list = append(l.list, append([]int(nil), l.filled...))

@@ -65,11 +65,12 @@ func (k *cut) fill(ctx context.Context, l *layout, windows []*window) error {
 	return k.sweep(ctx, "amplitudes", func(_, state, from, to int) {
 		columns := l.columns[state]
 		var amplitude complex128
-		emit := func(a, b uint64, factor float64) {
+		emit := func(a, b uint64, factor float64) bool {
 			block, row := unpacked(l.rows.get(a))
 			if w := of[block]; w != nil {
 				w.put(row, int(columns.get(b)), amplitude*complex(factor*scale, 0))
 			}
+			return true
 		}
 		k.states[state].each(from, to, func(c uint64, z complex128) {
 			amplitude = z

@@ -24,11 +24,13 @@ import (
 // Blocks are labelled by the charges of the part's particles, what empty sites
 // carry left out: of the charges that the sectors of all states fix, such as the
 // momenta that orbitals carry, and of 2Sz where it is conserved; the particle
-// number itself is no label.
+// number itself is no label, nor is a charge that is not a sum over particles,
+// such as the number of boson sites that are occupied twice.
 //
 // Errors: as of [SpaceCut]; spin sites; bosons together with fermions; a number
 // of particles that is not definite or differs between the states; a part that
-// is not between 1 and N.
+// is not between 1 and N, or that can be taken in more ways C(N,part) than float64
+// holds.
 //
 // Cost: as of [SpaceCut], with C(N,part) amplitudes for each product state.
 func ParticleCut(ctx context.Context, states []State, part int, opts *Options) (*Spectrum, error) {
@@ -50,10 +52,14 @@ func ParticleCut(ctx context.Context, states []State, part int, opts *Options) (
 	if part < 1 || part > total {
 		return nil, fmt.Errorf("entangle: a part of %d out of %d particles; 1 … %d are possible", part, total, total)
 	}
-	k := &cut{states: states, space: space, number: total, options: options}
+	ways := binomial(total, part)
+	if math.IsInf(ways, 1) {
+		return nil, fmt.Errorf("entangle: a part of %d out of %d particles can be taken in more than 1.8e308 ways; take a smaller part", part, total)
+	}
+	k := &cut{states: states, space: space, number: total, ways: ways, options: options}
 	number := space.ParticleNumber()
 	for _, q := range fixedCharges(states) {
-		if !sameCharge(q, number) {
+		if !sameCharge(q, number) && perParticle(space, q) {
 			k.fixed = append(k.fixed, q)
 		}
 	}
@@ -84,6 +90,24 @@ func NaturalOccupations(ctx context.Context, states []State, opts *Options) ([]f
 		list = append(list, 0)
 	}
 	return list, nil
+}
+
+// perParticle reports whether a charge is a sum over particles, so that the
+// charges of part and rest add up to that of the whole.
+func perParticle(space *basis.Space, q basis.Charge) bool {
+	weights, _ := q.ModeWeights(space)
+	for _, w := range weights {
+		for level, value := range w {
+			excess := value - level*w[1]
+			if q.Modulus > 0 {
+				excess %= q.Modulus
+			}
+			if excess != 0 {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 // oneStatistics reports why the sites of a space do not hold identical
@@ -181,7 +205,7 @@ type heap struct {
 	above        int // particles in the modes above
 }
 
-func (t *taker) split(c uint64, emit func(part, rest uint64, factor float64)) {
+func (t *taker) split(c uint64, emit func(part, rest uint64, factor float64) bool) {
 	var heaps [basis.MostBits]heap
 	n, above := basis.MostBits, 0
 	for i := len(t.modes) - 1; i >= 0; i-- {
@@ -196,11 +220,10 @@ func (t *taker) split(c uint64, emit func(part, rest uint64, factor float64)) {
 }
 
 // take takes left particles out of the heaps; a is what was taken below, skipped
-// the number of fermions left there.
-func (t *taker) take(c uint64, heaps []heap, left int, a uint64, skipped int, factor float64, emit func(part, rest uint64, factor float64)) {
+// the number of fermions left there. It stops and returns false when emit does.
+func (t *taker) take(c uint64, heaps []heap, left int, a uint64, skipped int, factor float64, emit func(part, rest uint64, factor float64) bool) bool {
 	if left == 0 {
-		emit(a, c-a, factor) // field by field, since no mode of a exceeds that of c
-		return
+		return emit(a, c-a, factor) // field by field, since no mode of a exceeds that of c
 	}
 	h := heaps[0]
 	for n := max(0, left-h.above); n <= min(h.level, left); n++ {
@@ -211,8 +234,11 @@ func (t *taker) take(c uint64, heaps []heap, left int, a uint64, skipped int, fa
 				f = -f
 			}
 		}
-		t.take(c, heaps[1:], left-n, a|uint64(n)<<h.shift, over, f, emit)
+		if !t.take(c, heaps[1:], left-n, a|uint64(n)<<h.shift, over, f, emit) {
+			return false
+		}
 	}
+	return true
 }
 
 // binomial returns n choose k, exact below 2^53.

@@ -46,10 +46,10 @@ func SpaceCut(ctx context.Context, states []State, sites []int, opts *Options) (
 		return nil, err
 	}
 	fermions := uint64(space.FermionBits())
-	k := &cut{states: states, space: space, number: -1, sites: sites, options: options}
+	k := &cut{states: states, space: space, number: -1, ways: 1, sites: sites, options: options}
 	k.fixed = fixedCharges(states)
 	k.maybe = unfixed(space, k.fixed)
-	k.split = func(c uint64, emit func(part, rest uint64, factor float64)) {
+	k.split = func(c uint64, emit func(part, rest uint64, factor float64) bool) {
 		a, b := c&part, c&^part
 		emit(a, b, sign(fermions, a, b))
 	}

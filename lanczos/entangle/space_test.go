@@ -255,23 +255,54 @@ func configuration(t testing.TB, space *basis.Space, levels ...int) basis.Config
 
 // Random states have the entropy Σ_{k=n+1}^{mn} 1/k - (m-1)/(2n) in the mean (Page,
 // Phys. Rev. Lett. 71, 1291, 1993; proved by Foong and Kanno, Phys. Rev. Lett. 72,
-// 1148, 1994): 2.6480972685724 for 16 × 64.
+// 1148, 1994) for m × n dimensions.
 func TestEntropyOfRandomStates(t *testing.T) {
-	space := makeSpace(t, repeated(10, basis.SpinHalf())...)
-	b := makeBasis(t, space, basis.Sector{})
 	r := rng(10)
-	const samples = 40
-	mean, square := 0.0, 0.0
-	for range samples {
-		s := spaceCut(t, []State{randomState(t, r, b)}, 1, 4, 6, 9).Entropy()
-		mean += s / samples
-		square += s * s / samples
+	for _, c := range []struct {
+		spins   int
+		sites   []int
+		samples int
+		want    float64
+	}{
+		{2, []int{1}, 2000, 0.33333333333333},
+		{10, []int{1, 4, 6, 9}, 40, 2.6480972685724},
+		{12, []int{0, 2, 4, 6, 8, 10}, 10, 3.6590254932606},
+	} {
+		b := makeBasis(t, makeSpace(t, repeated(c.spins, basis.SpinHalf())...), basis.Sector{})
+		n := float64(c.samples)
+		mean, square := 0.0, 0.0
+		for range c.samples {
+			s := spaceCut(t, []State{randomState(t, r, b)}, c.sites...).Entropy()
+			mean += s / n
+			square += s * s / n
+		}
+		deviation := math.Sqrt((square - mean*mean) / (n - 1))
+		if deviation > 0.01 {
+			t.Errorf("standard error %v", deviation)
+		}
+		near(t, "mean entropy", mean, c.want, 5*deviation)
 	}
-	deviation := math.Sqrt((square - mean*mean) / (samples - 1))
-	if deviation > 0.01 {
-		t.Errorf("standard error %v", deviation)
+}
+
+// A space with forbidden configurations: the t-J model's and a blockade's.
+func TestSpaceCutOfConstrainedStates(t *testing.T) {
+	r := rng(14)
+	for _, c := range []struct {
+		site     basis.Site
+		blockade bool
+	}{{basis.Electron(), false}, {basis.HardCoreBoson(), true}} {
+		space := makeSpace(t, repeated(6, c.site)...)
+		sector := basis.Sector{Charges: []basis.ChargeValue{space.ParticleNumber().Is(2)}, Symmetries: rotation(6, 1), Constraints: space.NoDoubleOccupancy()}
+		if c.blockade {
+			for i := range 6 {
+				sector.Constraints = append(sector.Constraints, basis.AtMost(1, []int{i, (i + 1) % 6}))
+			}
+		}
+		s := randomState(t, r, makeBasis(t, space, sector))
+		bare := unfolded(t, s, false)
+		nearAll(t, "sites", weights(spaceCut(t, []State{s}, 0, 3, 4)), weights(spaceCut(t, []State{bare}, 0, 3, 4)), 1e-13)
+		nearAll(t, "particles", weights(particleCut(t, []State{s}, 1)), weights(particleCut(t, []State{bare}, 1)), 1e-13)
 	}
-	near(t, "mean entropy", mean, 2.6480972685724, 4*deviation)
 }
 
 func TestSpaceCutRefuses(t *testing.T) {

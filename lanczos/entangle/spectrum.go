@@ -119,7 +119,7 @@ func (s *Spectrum) Renyi(alpha float64) (float64, error) {
 	for _, l := range levels {
 		sum += math.Exp(-alpha * (l.Xi - levels[0].Xi))
 	}
-	return max((math.Log(sum)-alpha*levels[0].Xi)/(1-alpha), 0), nil
+	return max(alpha/(alpha-1)*levels[0].Xi-math.Log(sum)/(alpha-1), 0), nil
 }
 
 // nearOne is the Rényi entropy of the order 1-d for small d ≠ 0, without
@@ -134,7 +134,8 @@ func nearOne(levels []Level, d float64) float64 {
 
 // LargestGap returns the largest spacing between neighbouring levels, the lowest
 // one where several are equal. With fewer than two levels nothing lies above:
-// Below counts all and XiAbove is +Inf. Weights that count as zero make no gap.
+// Below counts all and XiAbove is +Inf. Weights that count as zero make no gap;
+// the noise of an eigenvector does, unless Options.Error is given.
 func (s *Spectrum) LargestGap() Gap {
 	levels := s.Levels()
 	g := Gap{Below: len(levels), XiAbove: math.Inf(1)}

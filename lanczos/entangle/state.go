@@ -34,7 +34,10 @@ func ComplexState(b *basis.Basis, psi []complex128) (State, error) {
 		realValued = realValued && imag(z) == 0
 	}
 	norm, err := checkNorm(sum)
-	return State{basis: b, complex: psi, scale: 1 / norm, realValued: realValued}, err
+	if err != nil {
+		return State{}, err
+	}
+	return State{basis: b, complex: psi, scale: 1 / norm, realValued: realValued}, nil
 }
 
 // RealState returns the state with real amplitudes; see [ComplexState].
@@ -47,7 +50,10 @@ func RealState(b *basis.Basis, psi []float64) (State, error) {
 		sum += x * x
 	}
 	norm, err := checkNorm(sum)
-	return State{basis: b, real: psi, scale: 1 / norm, realValued: b.Real()}, err
+	if err != nil {
+		return State{}, err
+	}
+	return State{basis: b, real: psi, scale: 1 / norm, realValued: b.Real()}, nil
 }
 
 func checkLength(b *basis.Basis, n int) error {

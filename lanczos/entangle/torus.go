@@ -49,7 +49,7 @@ func (e Exclusion) OnTorus(particles, lx, ly int) ([]SectorCount, error) {
 			}
 			total /= float64(ly)
 			whole := math.Round(total)
-			if math.Abs(total-whole) > 1e-6 || whole < 0 || whole > 1<<52 {
+			if math.Abs(total-whole) > 1e-6 || whole < 0 {
 				return nil, fmt.Errorf("entangle: %v configurations at (%d, %d); the counting does not come out whole", total, kx, ky)
 			}
 			counts = append(counts, SectorCount{Charges: []int{kx, ky}, Count: uint64(whole)})
@@ -57,6 +57,10 @@ func (e Exclusion) OnTorus(particles, lx, ly int) ([]SectorCount, error) {
 	}
 	return counts, nil
 }
+
+// mostTraced is the largest number of configurations of one kx. The sums over all
+// shifts, of MostOrbitals at most, then keep their rounding far below one.
+const mostTraced = 1 << 50
 
 // trace returns, by Σ j mod lx, the sum of the signs of the admissible
 // configurations that a shift by s orbitals carries to themselves.
@@ -79,6 +83,9 @@ func (e Exclusion) trace(particles, lx, s int) ([]float64, error) {
 	// Σ j over all repeats, from that over one period.
 	offset := period * inPeriod * (repeats * (repeats - 1) / 2)
 	for k, count := range counts {
+		if count > mostTraced {
+			return nil, fmt.Errorf("entangle: %d configurations with one kx; at most %d are resolved by ky, give fewer particles or orbitals", count, int64(mostTraced))
+		}
 		sums[(repeats*k+offset)%lx] += sign * float64(count)
 	}
 	return sums, nil
