@@ -37,5 +37,35 @@
 // streams, flags, the standard logger and exit belong to the run. The current
 // folder and the environment cannot be changed by a script.
 //
-// The package may import script/symbols and through it every public package.
+// # What a script may reach
+//
+// Files: those below Options.Root, the current folder by default, and what
+// Options.Read and Options.Write add; package fence says how paths are judged.
+// This holds for packages os and path/filepath and for the functions of Ketloom
+// that take paths. Temporary files lie in a folder of the run that goes with it.
+// The environment is empty without Options.Env. There are no packages for
+// processes, networks, reflection, plugins or system calls, no unsafe, no cgo,
+// and the compiler's directives go:embed and go:linkname are refused.
+//
+// Options.Time and Options.Steps stop a script, with the line at which it was.
+// An allocation larger than Options.Memory is a panic with its line, and so is
+// what would be fatal to a compiled program: unlocking what is not locked. Many
+// small allocations are not bounded, and two goroutines that change one map
+// without a lock can still end the whole program, as they end a compiled one.
+// Run scripts that are not trusted in a process of their own.
+//
+// # Embedding
+//
+// A host gives a script packages of its own by Options.Packages. Their tables
+// are written by
+//
+//	go run ketloom/script/symbols/generate -package example.org/host/physics -out symbols_physics.go
+//
+// in the host's module. Functions of these packages run as they are: a path that
+// a script gives them is theirs to judge. Values come back through
+// Options.Return, which is called for each host.Return of the script. The
+// folder examples/embedding is such a program.
+//
+// The package may import script/symbols and through it every public package,
+// script/lower, script/machine, script/universe and script/fence.
 package script

@@ -42,7 +42,7 @@ type Options struct {
 	// Time is how long the script may run; 0 means no limit.
 	Time time.Duration
 	// Steps is how many turns of loops and calls of its own functions the script
-	// may make; 0 means no limit. Counting costs about a tenth of a microsecond a step.
+	// may make; 0 means no limit. Counting costs some tenths of a microsecond a step.
 	Steps int64
 	// Memory is the most bytes of one allocation; 0 means DefaultMemory, a
 	// negative number no limit.

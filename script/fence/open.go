@@ -8,6 +8,7 @@ import (
 	"path/filepath"
 	"slices"
 	"strings"
+	"syscall"
 )
 
 const writing = os.O_WRONLY | os.O_RDWR | os.O_CREATE | os.O_TRUNC | os.O_APPEND
@@ -32,8 +33,8 @@ func (f *Fence) openFile(name string, flag int, perm os.FileMode) (*os.File, err
 	if err != nil {
 		return nil, fault("open", name, err)
 	}
-	if flag&os.O_CREATE != 0 && strings.HasSuffix(name, string(filepath.Separator)) {
-		return os.OpenFile(name, os.O_WRONLY, 0) // a folder; let the system say so
+	if flag&os.O_CREATE != 0 && folderOnly(name) {
+		return nil, fault("open", name, syscall.EISDIR)
 	}
 	file, err := s.root.OpenFile(s.rel, flag, perm)
 	if err != nil {
@@ -110,7 +111,7 @@ func (f *Fence) stat(name string) (os.FileInfo, error) {
 }
 
 func (f *Fence) lstat(name string) (os.FileInfo, error) {
-	return f.info("lstat", name, false, (*os.Root).Lstat)
+	return f.info("lstat", name, folderOnly(name), (*os.Root).Lstat)
 }
 
 func (f *Fence) info(op, name string, last bool, look func(*os.Root, string) (os.FileInfo, error)) (os.FileInfo, error) {

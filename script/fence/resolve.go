@@ -4,6 +4,7 @@ import (
 	"errors"
 	"os"
 	"path/filepath"
+	"slices"
 	"strings"
 	"syscall"
 )
@@ -35,6 +36,9 @@ func (f *Fence) real(path string, last bool) (string, error) {
 		element := todo[0]
 		todo = todo[1:]
 		if element == ".." {
+			if info, err := os.Lstat(done); err == nil && !info.IsDir() {
+				return "", syscall.ENOTDIR
+			}
 			done = filepath.Dir(done)
 			continue
 		}
@@ -42,10 +46,8 @@ func (f *Fence) real(path string, last bool) (string, error) {
 		info, err := os.Lstat(next)
 		switch {
 		case errors.Is(err, os.ErrNotExist):
-			for _, e := range todo {
-				if e == ".." {
-					return "", errMissing
-				}
+			if slices.Contains(todo, "..") || strings.HasSuffix(path, string(filepath.Separator)+".") {
+				return "", errMissing
 			}
 			return filepath.Join(append([]string{next}, todo...)...), nil
 		case err != nil:
@@ -67,7 +69,18 @@ func (f *Fence) real(path string, last bool) (string, error) {
 		}
 		todo = append(elements(target), todo...)
 	}
+	if folderOnly(path) {
+		if info, err := os.Stat(done); err == nil && !info.IsDir() {
+			return "", syscall.ENOTDIR
+		}
+	}
 	return done, nil
+}
+
+// folderOnly says that a path can only name a folder.
+func folderOnly(path string) bool {
+	_, end := filepath.Split(path)
+	return end == "" || end == "." || end == ".."
 }
 
 // elements are the elements of a path without "" and ".".
