@@ -29,9 +29,13 @@ func fillArchive(w *archive.Writer, s settings, sectors []sector, m manifold) er
 		if m.counts[i] == 0 {
 			continue
 		}
-		below := *sec.result
-		below.Levels = sec.result.Levels[:m.counts[i]]
-		below.Vectors = sec.result.Vectors[:m.counts[i]]
+		kept, all := m.counts[i], sec.result
+		below := *all
+		below.Levels, below.Vectors = all.Levels[:kept], all.Vectors[:kept]
+		if kept < len(all.Levels) { // the level above those that are kept
+			below.Check.Next = all.Levels[kept].Energy - all.Levels[kept].Bound
+			below.Check.HasNext = true
+		}
 		err := w.Add(archive.Sector{Basis: sec.basis, Operator: sec.h, Result: &below})
 		if err != nil {
 			return err

@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"math"
 
 	"ketloom/basis"
 	"ketloom/lanczos/entangle"
@@ -66,8 +67,9 @@ func momentumOf(cut *entangle.Spectrum, block entangle.Block) [2]int {
 	return k
 }
 
-func (r results) print(s settings) {
+func (r results) print(s settings, cut *entangle.Spectrum) {
 	fmt.Printf("\nparticle entanglement of %d particles: %d levels\n", r.Part, r.Levels)
+	fmt.Printf("levels up to ξ = %.0f can be trusted, by the residuals of the states\n", math.Floor(cut.Trust))
 	fmt.Printf("largest gap from ξ = %.6f to %.6f\n\n", r.XiBelow, r.XiAbove)
 	fmt.Println("  kx  ky   below the gap   expected")
 	agree := r.BelowGap == r.Expected

@@ -14,6 +14,7 @@ import (
 	"encoding/json"
 	"flag"
 	"fmt"
+	"math"
 	"os"
 	"os/signal"
 
@@ -56,7 +57,7 @@ func study(ctx context.Context, s settings) error {
 	if flag.NArg() > 0 {
 		return fmt.Errorf("unexpected %q: all settings are flags, see -h", flag.Arg(0))
 	}
-	states, err := readStates(ctx, s.archive)
+	states, wrong, err := readStates(ctx, s.archive)
 	if err != nil {
 		return err
 	}
@@ -65,7 +66,7 @@ func study(ctx context.Context, s settings) error {
 		return err
 	}
 	bar := progress.Terminal(os.Stderr)
-	cut, err := entangle.ParticleCut(ctx, states, s.part, &entangle.Options{Progress: bar.Report})
+	cut, err := entangle.ParticleCut(ctx, states, s.part, &entangle.Options{Error: wrong, Progress: bar.Report})
 	bar.Close()
 	if err != nil {
 		return err
@@ -75,7 +76,7 @@ func study(ctx context.Context, s settings) error {
 		return err
 	}
 	r := compare(s, cut, expected)
-	r.print(s)
+	r.print(s, cut)
 	if s.figure != "" {
 		if err := r.draw(s, cut); err != nil {
 			return err
@@ -91,48 +92,54 @@ func study(ctx context.Context, s settings) error {
 	return nil
 }
 
-// readStates returns every state of the archive.
-func readStates(ctx context.Context, path string) ([]entangle.State, error) {
+// readStates returns every state of the archive and a bound on their errors.
+func readStates(ctx context.Context, path string) (states []entangle.State, wrong float64, err error) {
 	f, err := archive.Open(path)
 	if err != nil {
-		return nil, err
+		return nil, 0, err
 	}
-	states, err := statesOf(ctx, f)
+	states, wrong, err = statesOf(ctx, path, f)
 	if closed := f.Close(); err == nil {
 		err = closed
 	}
-	return states, err
+	return states, wrong, err
 }
 
-func statesOf(ctx context.Context, f *archive.File) ([]entangle.State, error) {
+// statesOf reads the states sector by sector. An eigenvector with the residual r is
+// wrong by at most r divided by the distance to the levels that were left out.
+func statesOf(ctx context.Context, path string, f *archive.File) (states []entangle.State, wrong float64, err error) {
 	fmt.Printf("archive    model %s, %s cells, %s particles\n", f.Note("model"), f.Note("cells"), f.Note("particles"))
-	var states []entangle.State
 	for i := 0; i < f.Sectors(); i++ {
 		sector, err := f.Sector(i)
 		if err != nil {
-			return nil, err
+			return nil, 0, err
 		}
 		b, err := sector.Basis(ctx, nil)
 		if err != nil {
-			return nil, err
+			return nil, 0, err
 		}
 		for j := 0; j < sector.Len(); j++ {
 			v, err := sector.Vector(j)
 			if err != nil {
-				return nil, err
+				return nil, 0, err
 			}
 			state, err := entangle.ComplexState(b, v.AsComplex())
 			if err != nil {
-				return nil, err
+				return nil, 0, err
 			}
-			fmt.Printf("state      energy %.10f, %v\n", sector.Level(j).Energy, b)
+			level := sector.Level(j)
+			fmt.Printf("state      energy %.10f, %v\n", level.Energy, b)
 			states = append(states, state)
+			check := sector.Solver().Check
+			if check.HasNext && check.Next > level.Energy {
+				wrong = math.Max(wrong, level.Residual/(check.Next-level.Energy))
+			}
 		}
 	}
 	if len(states) == 0 {
-		return nil, fmt.Errorf("%s holds no state", f.Note("model"))
+		return nil, 0, fmt.Errorf("%s holds no state", path)
 	}
-	return states, nil
+	return states, wrong, nil
 }
 
 // momenta returns the charges kx and ky of a basis of orbitals.
