@@ -73,9 +73,16 @@ func TestTheHostStaysAlive(t *testing.T) {
 		{"panic(sort.Slice)", ""},
 		{"var w sync.WaitGroup; w.Done()", "negative WaitGroup counter"},
 		{"x := []any{}; x = append(x, &x); panic(errors.New(\"loops\"))", "loops"},
+		{"x := []any{nil}; x[0] = x; fmt.Println(x)", "contains itself"},
+		{"m := map[string]any{}; m[\"a\"] = m; _ = fmt.Sprintf(\"%v\", m)", "contains itself"},
+		{"type own struct{ in any }; x := []any{nil}; x[0] = own{x}; fmt.Print(&x)", "contains itself"},
+		{"type list []any; x := list{nil, nil}; x[1] = x; panic(x)", "list"},
+		{"x := []any{nil}; x[0] = x; panic(x)", "[]interface"},
+		{"x := []any{nil}; x[0] = x; log.New(os.Stderr, \"\", 0).Println(x)", "contains itself"},
+		{"x := []any{nil}; x[0] = x; var l interface{ Printf(string, ...any) } = log.Default(); l.Printf(\"%v\", x)", "contains itself"},
 		{"o := sync.OnceFunc(func() { panic(\"once\") }); o()", "once"},
 	} {
-		err := Run(context.Background(), Options{Path: "a.go", Source: "package main\nimport (\"errors\"; \"sort\"; \"strings\"; \"sync\"; \"time\")\nvar _, _, _, _ = errors.New, sort.Ints, strings.Map, time.Now\nvar _ sync.Mutex\nfunc main() {\n" + c.body + "\n}\n"})
+		err := Run(context.Background(), Options{Path: "a.go", Source: "package main\nimport (\"errors\"; \"fmt\"; \"log\"; \"os\"; \"sort\"; \"strings\"; \"sync\"; \"time\")\nvar _, _, _ = fmt.Print, log.Print, os.Args\nvar _, _, _, _ = errors.New, sort.Ints, strings.Map, time.Now\nvar _ sync.Mutex\nfunc main() {\n" + c.body + "\n}\n"})
 		var p *PanicError
 		switch {
 		case c.want == "":

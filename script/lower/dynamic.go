@@ -83,7 +83,11 @@ func (c *compiler) boundMethod(x reflect.Value, name string) reflect.Value {
 		return bound
 	}
 	return reflect.MakeFunc(bound.Type(), func(in []reflect.Value) []reflect.Value {
-		return target.Call(append([]reflect.Value{x}, in...))
+		in = append([]reflect.Value{x}, in...)
+		if target.Type().IsVariadic() {
+			return target.CallSlice(in)
+		}
+		return target.Call(in)
 	})
 }
 

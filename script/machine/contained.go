@@ -4,6 +4,7 @@ import (
 	"bufio"
 	"bytes"
 	"io"
+	"log"
 	"math/big"
 	"strings"
 	"sync"
@@ -28,6 +29,12 @@ func (r *Run) contained() map[string]any {
 			r.allow(i/8, 1)
 			return z.SetBit(x, i, b)
 		},
+		"(log.Logger).Print":     func(l *log.Logger, a ...any) { l.Print(prepare(a)...) },
+		"(log.Logger).Println":   func(l *log.Logger, a ...any) { l.Println(prepare(a)...) },
+		"(log.Logger).Printf":    func(l *log.Logger, f string, a ...any) { f, a = verbs(f, a); l.Printf(f, a...) },
+		"(log.Logger).Panic":     func(l *log.Logger, a ...any) { l.Panic(prepare(a)...) },
+		"(log.Logger).Panicln":   func(l *log.Logger, a ...any) { l.Panicln(prepare(a)...) },
+		"(log.Logger).Panicf":    func(l *log.Logger, f string, a ...any) { f, a = verbs(f, a); l.Panicf(f, a...) },
 		"(sync.Mutex).Unlock":    unlock,
 		"(sync.RWMutex).Unlock":  unlockWriter,
 		"(sync.RWMutex).RUnlock": unlockReader,

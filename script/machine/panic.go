@@ -175,6 +175,9 @@ func (t *Thrown) Message() string {
 		}
 		return fmt.Sprintf("%s(%v)", rv.Type(), rv)
 	}
+	if endless(rv, 0) {
+		return fmt.Sprintf("(%T)", v)
+	}
 	return fmt.Sprintf("(%T) %v", v, v)
 }
 
@@ -190,6 +193,9 @@ func (v Value) panicText() string {
 		return fmt.Sprintf("%s(%q)", v.T, v.V)
 	case reflect.Bool, reflect.Int, reflect.Int8, reflect.Int16, reflect.Int32, reflect.Int64, reflect.Uint, reflect.Uint8, reflect.Uint16, reflect.Uint32, reflect.Uint64:
 		return fmt.Sprintf("%s(%v)", v.T, v.V)
+	}
+	if endless(v.reflected(), 0) {
+		return fmt.Sprintf("(%s)", v.T)
 	}
 	return fmt.Sprintf("(%s) %v", v.T, v)
 }

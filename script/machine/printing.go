@@ -14,6 +14,7 @@ import (
 func prepare(args []any) []any {
 	out := make([]any, len(args))
 	for i, a := range args {
+		finite(a)
 		if f, ok := a.(Failure); ok {
 			out[i] = f
 			continue
