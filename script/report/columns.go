@@ -83,7 +83,7 @@ func (c columns) drawCluster(s sheet, g cluster, y, thick float64, ink color.Col
 	x, w := c.at(g.column), c.dash()
 	s.dashes(x-w/2, y, w, thick, g.count, ink)
 	if numbered {
-		s.text(strconv.Itoa(g.count), countSize, x+w/2+0.8, y-capital*countSize/2, 0, ink)
+		s.text(strconv.Itoa(g.count), countSize, x+w/2+numberGap, y-capital*countSize/2, 0, ink)
 	}
 }
 
@@ -161,6 +161,13 @@ func (c columns) thickness(groups []cluster, heights []float64, inManifold bool)
 	return math.Max(0.3, math.Min(dashWidth, (high-low)/2/float64(most)))
 }
 
+// Free paper on both sides of the number of a degenerate level: it stands nearer
+// to the dash that it counts than to the next one.
+const (
+	numberGap  = 0.8
+	numberRest = 1.8
+)
+
 // numbered says which clusters have room for their number: it must fit between
 // two columns and not touch another number of its column.
 func (c columns) numbered(groups []cluster, heights []float64) []bool {
@@ -168,7 +175,7 @@ func (c columns) numbered(groups []cluster, heights []float64) []bool {
 	last := map[int]float64{}
 	room := c.pitch - c.dash()
 	for i, g := range groups {
-		if g.count < 2 || width(strconv.Itoa(g.count), countSize)+1.2 > room {
+		if g.count < 2 || width(strconv.Itoa(g.count), countSize)+numberGap+numberRest > room {
 			continue
 		}
 		if before, seen := last[g.column]; seen && heights[i]-before < capital*countSize+1 {

@@ -85,19 +85,19 @@ func (c EntropyCurve) check(i int) error {
 		return err
 	}
 	if len(c.Sites) == 0 || len(c.Sites) != len(c.Entropies) {
-		return fmt.Errorf("%w: curve %d %s has %d cuts and %d entropies; give as many of both, at least one",
-			ErrData, i, c.Name, len(c.Sites), len(c.Entropies))
+		return fmt.Errorf("%w: %s has %d cuts and %d entropies; give as many of both, at least one",
+			ErrData, called("curve", i, c.Name), len(c.Sites), len(c.Entropies))
 	}
 	for j, v := range c.Entropies {
-		if err := checkNumber(fmt.Sprintf("entropy %d of curve %d %s", j, i, c.Name), v); err != nil {
+		if err := checkNumber(fmt.Sprintf("entropy %d of %s", j, called("curve", i, c.Name)), v); err != nil {
 			return err
 		}
-		if err := checkNumber(fmt.Sprintf("cut %d of curve %d %s", j, i, c.Name), float64(c.Sites[j])); err != nil {
+		if err := checkNumber(fmt.Sprintf("cut %d of %s", j, called("curve", i, c.Name)), float64(c.Sites[j])); err != nil {
 			return err
 		}
 		if c.Sites[j] < 0 || j > 0 && c.Sites[j] <= c.Sites[j-1] {
-			return fmt.Errorf("%w: cut %d of curve %d %s has %d sites in part A; give ascending numbers, none negative",
-				ErrData, j, i, c.Name, c.Sites[j])
+			return fmt.Errorf("%w: cut %d of %s has %d sites in part A; give ascending numbers, none negative",
+				ErrData, j, called("curve", i, c.Name), c.Sites[j])
 		}
 	}
 	return nil

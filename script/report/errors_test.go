@@ -55,7 +55,7 @@ func TestBadDataAreErrorsThatSayWhich(t *testing.T) {
 		{SpectralFlow{Flux: []float64{0.5}, Levels: [][]float64{{1}}, Manifold: 2}, ErrData, "a manifold of 2 among 1 levels at flux 0.5"},
 		{SpectralFlow{Flux: []float64{0.5}, Levels: [][]float64{{1}}, Manifold: 1, ShadeGap: true}, ErrData, "no gap to shade at flux 0.5"},
 		{SpectralFlow{Flux: []float64{0}, Flows: []Flow{{Name: "a"}}}, ErrData, "flow 0 a has 0 energies for 1 fluxes"},
-		{SpectralFlow{Flux: []float64{0}, Flows: []Flow{{Energies: []float64{nan}}}}, ErrData, "energy of flow 0  at flux 0 is NaN"},
+		{SpectralFlow{Flux: []float64{0}, Flows: []Flow{{Energies: []float64{nan}}}}, ErrData, "energy of flow 0 at flux 0 is NaN"},
 		{SpectralFlow{Flux: []float64{0, 0}, Flows: []Flow{{Energies: []float64{1, 2}}}}, ErrData, "flux 0 follows 0"},
 		{SpectralFlow{Flux: []float64{0}, Flows: []Flow{{Energies: []float64{1}}}, Manifold: 1}, ErrData, "Manifold 1 without Levels"},
 		{SpectralFlow{Flux: []float64{0}, Flows: []Flow{{Energies: []float64{1}}}, ShadeGap: true}, ErrData, "no gap to shade"},

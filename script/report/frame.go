@@ -193,14 +193,25 @@ func fitted(label string, room float64) float64 {
 	return 0
 }
 
+// beside is the range of heights that the vertical title has to itself: above the
+// note and the horizontal title, below the key.
+func (p *panel) beside() (low, high float64) {
+	low = border + p.noteHeight()
+	if p.xTitle() != "" {
+		low += titleSize*(1+descenders) + labelGap
+	}
+	return low, p.height - border - p.titleHeight() - p.keyHeight()
+}
+
 func (p *panel) checkTitles() error {
+	low, high := p.beside()
 	for _, t := range []struct {
 		what, label string
 		room        float64
 	}{
 		{"title of the page", p.page.Title, p.width - 2*border},
 		{"title of the horizontal axis", p.xTitle(), p.width - 2*border},
-		{"title of the vertical axis", p.y.title, p.height - 2*border},
+		{"title of the vertical axis", p.y.title, high - low},
 	} {
 		if fitted(t.label, t.room) == 0 {
 			return fmt.Errorf("%w: the %s %q has %.0f mm; shorten it or enlarge the page",
@@ -252,11 +263,7 @@ func (p *panel) titles() {
 		x := between((p.left+p.right)/2, width(label, size), border, p.width-border)
 		p.text(label, size, x, border+p.noteHeight()+descenders*titleSize, 0.5, ink)
 	}
-	if label := p.y.title; label != "" {
-		size := fitted(label, p.height-2*border)
-		y := between((p.bottom+p.top)/2, width(label, size), border, p.height-border)
-		p.upright(label, size, border+capital*titleSize, y, 0.5, ink)
-	}
+	p.verticalTitle()
 	top := p.height - border
 	if p.page.Title != "" {
 		p.text(p.page.Title, fitted(p.page.Title, p.width-2*border), border, top-capital*titleSize-1, 0, ink)
@@ -266,6 +273,16 @@ func (p *panel) titles() {
 		base := border + float64(len(p.note)-1-i)*noteSize*1.2 + descenders*noteSize
 		p.text(line, noteSize, border, base, 0, muted)
 	}
+}
+
+func (p *panel) verticalTitle() {
+	if p.y.title == "" {
+		return
+	}
+	low, high := p.beside()
+	size := fitted(p.y.title, high-low)
+	y := between((p.bottom+p.top)/2, width(p.y.title, size), low, high)
+	p.upright(p.y.title, size, border+capital*titleSize, y, 0.5, ink)
 }
 
 // clip keeps a height inside the plotting area.

@@ -28,6 +28,15 @@ func checkNumber(what string, v float64) error {
 	return nil
 }
 
+// called names one of several things in an error: its kind, its index and, if it
+// has one, its name.
+func called(kind string, i int, name string) string {
+	if name == "" {
+		return fmt.Sprintf("%s %d", kind, i)
+	}
+	return fmt.Sprintf("%s %d %s", kind, i, name)
+}
+
 // gather returns the levels of all columns in ascending order, those of earlier
 // columns first among equals.
 func gather(columns [][]float64) []placed {

@@ -157,7 +157,7 @@ func checkSectors(names []string, levels [][]float64) ([]string, error) {
 			out[i] = strconv.Itoa(i)
 		}
 		for j, v := range levels[i] {
-			if err := checkNumber(fmt.Sprintf("level %d of sector %d %s", j, i, name), v); err != nil {
+			if err := checkNumber(fmt.Sprintf("level %d of %s", j, called("sector", i, name)), v); err != nil {
 				return nil, err
 			}
 		}

@@ -155,10 +155,10 @@ func (f SpectralFlow) checkFlows() error {
 			return err
 		}
 		if len(l.Energies) != len(f.Flux) {
-			return fmt.Errorf("%w: flow %d %s has %d energies for %d fluxes; give one for each flux", ErrData, i, l.Name, len(l.Energies), len(f.Flux))
+			return fmt.Errorf("%w: %s has %d energies for %d fluxes; give one for each flux", ErrData, called("flow", i, l.Name), len(l.Energies), len(f.Flux))
 		}
 		for j, v := range l.Energies {
-			if err := checkNumber(fmt.Sprintf("energy of flow %d %s at flux %v", i, l.Name, f.Flux[j]), v); err != nil {
+			if err := checkNumber(fmt.Sprintf("energy of %s at flux %v", called("flow", i, l.Name), f.Flux[j]), v); err != nil {
 				return err
 			}
 		}

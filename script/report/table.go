@@ -114,7 +114,7 @@ func (t Table) check() error {
 		}
 		for j, cell := range row {
 			if err := checkCell(cell); err != nil {
-				return fmt.Errorf("%w: row %d, column %d %s: %v", ErrData, i, j, t.Columns[j].Title, err)
+				return fmt.Errorf("%w: row %d, %s: %v", ErrData, i, called("column", j, t.Columns[j].Title), err)
 			}
 		}
 	}
@@ -210,7 +210,7 @@ func (t Table) formatted() ([][]string, error) {
 			default:
 				line[j] = fmt.Sprintf(c.Format, cell)
 				if _, word := cell.(string); !word && strings.Contains(line[j], "%!") {
-					return nil, fmt.Errorf("%w: row %d, column %d %s: the format %q does not fit the cell %v", ErrData, i, j, c.Title, c.Format, cell)
+					return nil, fmt.Errorf("%w: row %d, %s: the format %q does not fit the cell %v", ErrData, i, called("column", j, c.Title), c.Format, cell)
 				}
 				if err := checkLine(fmt.Sprintf("cell of row %d, column %d", i, j), line[j]); err != nil {
 					return nil, err
