@@ -2,7 +2,6 @@ package script
 
 import (
 	"runtime/metrics"
-	"sync/atomic"
 	"time"
 
 	"ketloom/script/machine"
@@ -18,9 +17,6 @@ const (
 
 const stackMetric = "/memory/classes/heap/stacks:bytes"
 
-// active is the number of scripts that run.
-var active atomic.Int32
-
 func stacks() uint64 {
 	s := []metrics.Sample{{Name: stackMetric}}
 	metrics.Read(s)
@@ -32,8 +28,6 @@ func stacks() uint64 {
 
 // watch ends the run when its functions call each other without end.
 func watch(run *machine.Run, done <-chan struct{}) {
-	active.Add(1)
-	defer active.Add(-1)
 	start := stacks()
 	t := time.NewTicker(stackInterval)
 	defer t.Stop()
@@ -43,14 +37,15 @@ func watch(run *machine.Run, done <-chan struct{}) {
 			return
 		case <-t.C:
 			now := stacks()
+			start = min(start, now)
 			if now <= start+stackLimit {
 				continue
 			}
-			if active.Load() == 1 || run.TooDeep() {
+			if run.TooDeep() {
 				run.Overflow()
 				return
 			}
-			start = now // another script's, or the host's
+			start = now // another script's, the host's, or many short ones
 		}
 	}
 }

@@ -214,3 +214,36 @@ func ExampleCheck() {
 	// sum.go:4:7: undefined: total
 	// 	x := total
 }
+
+// Many short stacks are not one that is too deep, whoever they belong to.
+func TestManyStacksAreNoOverflow(t *testing.T) {
+	if testing.Short() {
+		t.Skip("needs half a gigabyte")
+	}
+	var wg sync.WaitGroup
+	hold := make(chan struct{})
+	defer wg.Wait()
+	defer close(hold)
+	go func() {
+		time.Sleep(50 * time.Millisecond)
+		for range 1000 {
+			wg.Go(func() { bulky(hold, 4) })
+		}
+	}()
+	src := "package main\nimport \"time\"\nfunc main() { time.Sleep(600 * time.Millisecond) }\n"
+	if err := Run(context.Background(), Options{Source: src}); err != nil {
+		t.Error(err)
+	}
+}
+
+// bulky waits on a stack of half a megabyte.
+//
+//go:noinline
+func bulky(hold chan struct{}, calls int) byte {
+	var frame [100 << 10]byte
+	if calls > 0 {
+		return bulky(hold, calls-1)
+	}
+	<-hold
+	return frame[len(hold)]
+}
