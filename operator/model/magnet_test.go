@@ -20,7 +20,7 @@ func ring(t *testing.T, n int, site basis.Site) (*lattice.Cluster, *basis.Space)
 
 func TestHeisenbergRings(t *testing.T) {
 	e0 := map[int]float64{}
-	triplets := map[int][]float64{}
+	triplets, singlets := map[int][][]float64{}, map[int][][]float64{} // by momentum
 	for _, n := range []int{4, 6, 8, 10, 12, 14} {
 		c, space := ring(t, n, basis.SpinHalf())
 		h := built[operator.Operator](t)(Heisenberg(space, c, []float64{1}))
@@ -31,20 +31,34 @@ func TestHeisenbergRings(t *testing.T) {
 		if math.Abs(levels[want][0]-e0[n]) > 1e-12 {
 			t.Errorf("N = %d: the ground state is not at momentum index %d", n, want)
 		}
-		triplets[n] = merged(byMomentum(t, h, c, charges(space.TwiceSz().Is(2))))
+		triplets[n] = byMomentum(t, h, c, charges(space.TwiceSz().Is(2)))
+		for k := range levels {
+			singlets[n] = append(singlets[n], without(t, levels[k], triplets[n][k]))
+		}
 	}
 	want, r := value[float64](t, "A1-heis-ring-N6-E0")
 	expect(t, r, "E0", []float64{e0[6]}, []float64{want})
 	for _, n := range []int{4, 6, 10, 12, 14} {
 		gap, r := value[float64](t, fmt.Sprintf("A1-heis-ring-N%d-triplet-gap", n))
-		expect(t, r, "gap, triplet", []float64{triplets[n][0] - e0[n], triplets[n][0]}, []float64{gap, r.Data.Triplet})
+		e := merged(triplets[n])[0]
+		expect(t, r, "gap, triplet", []float64{e - e0[n], e, triplets[n][r.Data.Momentum][0]}, []float64{gap, r.Data.Triplet, r.Data.Triplet})
+	}
+	for _, n := range []int{6, 8, 10, 12, 14} {
+		gap, r := value[float64](t, fmt.Sprintf("A1-heis-ring-N%d-singlet-gap", n))
+		expect(t, r, "gap", []float64{merged(singlets[n])[1] - e0[n]}, []float64{gap})
+		if !near(singlets[n][r.Data.Momentum], e0[n]+gap) {
+			t.Errorf("%s: not at momentum index %d", r.ID, r.Data.Momentum)
+		}
 	}
 	for _, n := range []int{7, 11} {
 		c, space := ring(t, n, basis.SpinHalf())
 		h := built[operator.Operator](t)(Heisenberg(space, c, []float64{1}))
-		levels := merged(byMomentum(t, h, c, charges(space.TwiceSz().Is(1))))
+		levels := byMomentum(t, h, c, charges(space.TwiceSz().Is(1)))
 		want, r := value[float64](t, fmt.Sprintf("A1-heis-ring-N%d-E0", n))
-		expect(t, r, "E0 twice", levels, []float64{want, want})
+		expect(t, r, "E0 twice", merged(levels), []float64{want, want})
+		for _, k := range r.Data.Momenta {
+			expect(t, r, fmt.Sprintf("momentum index %d", k), levels[k], []float64{want})
+		}
 	}
 }
 
@@ -112,7 +126,7 @@ func TestFrustratedRings(t *testing.T) {
 		zero := merged(byMomentum(t, h, c, charges(space.TwiceSz().Is(0))))
 		one := merged(byMomentum(t, h, c, charges(space.TwiceSz().Is(2))))
 		want, r := value[[]float64](t, fmt.Sprintf("A3-J1J2-%v-N12", j2))
-		expect(t, r, "E0, triplet", []float64{zero[0], one[0]}, want[:2])
+		expect(t, r, "E0, triplet, excited singlet", []float64{zero[0], one[0], without(t, zero, one)[1]}, want)
 	}
 }
 
@@ -163,7 +177,8 @@ func TestFieldsAndIsing(t *testing.T) {
 	for _, x := range e {
 		square += x * x
 	}
-	expect(t, r, "E0, E1, Emax, ΣE²", []float64{e[0], e[1], e[len(e)-1], square}, want[:4])
+	ratio := gapRatio(e[len(e)/3 : 2*len(e)/3])
+	expect(t, r, "E0, E1, Emax, ΣE², gap ratio", []float64{e[0], e[1], e[len(e)-1], square, ratio}, want)
 
 	// One spin in a field along any direction: ±|h|/2.
 	one := built[*basis.Space](t)(basis.Uniform(1, basis.SpinHalf()))
@@ -206,9 +221,13 @@ func TestFourByFourSquare(t *testing.T) {
 	sector.Symmetries = c.Sector(c.Momentum(0, 0))
 	h := built[operator.Operator](t)(Heisenberg(space, c, []float64{1}))
 	want, r := value[map[string]float64](t, "B1-square-4x4")
-	e := spectrum(t, h, sector)
-	expect(t, r, "E0", e, []float64{want["E0"]})
-	expect(t, r, "k = 0", e, r.Data.LowestByMomentum["(0,0)"])
+	expect(t, r, "E0", spectrum(t, h, sector), []float64{want["E0"]})
+	for i, e := range lowestByMomentum(t, h, c, charges(space.TwiceSz().Is(0)), 2) {
+		k := c.Momenta()[i]
+		expect(t, r, "momentum "+k.String(), e, r.Data.LowestByMomentum[momentumKey(k)])
+	}
+	one := merged(lowestByMomentum(t, h, c, charges(space.TwiceSz().Is(2)), 1))
+	expect(t, r, "E(Sz=1)", one, []float64{want["lowest_Sz1"]})
 	xy := built[operator.Operator](t)(XXZ(space, c, []float64{1}, []float64{0}, nil))
 	planar, r := value[float64](t, "B2-XY-4x4")
 	expect(t, r, "E0", spectrum(t, xy, sector), []float64{planar})
@@ -240,37 +259,6 @@ func TestThreeSpinChirality(t *testing.T) {
 	}
 	e := merged(byMomentum(t, operator.Sum(terms), c, charges(space.TwiceSz().Is(0))))
 	expect(t, r, "lowest three", e, want)
-}
-
-func TestBondDirectionsMakeTheKitaevModel(t *testing.T) {
-	c := built[*lattice.Cluster](t)(lattice.Torus(lattice.Honeycomb(), 3, 2))
-	space := onSites(t, c, basis.SpinHalf())
-	o := operator.On(space)
-	bonds := built[[]lattice.Bond](t)(c.Bonds(1))
-	var terms []operator.Operator
-	for _, b := range bonds {
-		switch b.Cells {
-		case [2]int{0, 0}:
-			terms = append(terms, o.Sz(b.From).Times(o.Sz(b.To)).Scale(2.5))
-		case [2]int{-1, 0}:
-			terms = append(terms, o.Sx(b.From).Times(o.Sx(b.To)))
-		case [2]int{0, -1}:
-			terms = append(terms, o.Sy(b.From).Times(o.Sy(b.To)))
-		}
-	}
-	h := operator.Sum(terms)
-	want, r := value[[]float64](t, "B4-kitaev-12-z2.5")
-	var list [][]float64
-	for _, k := range c.Momenta() {
-		list = append(list, lowest(t, h, basis.Sector{Symmetries: c.Sector(k)}, 3))
-	}
-	e := merged(list)
-	// The list names the lowest level twice. It is threefold: once at k = 0 and
-	// once at each of the momenta (1/3, 0) and (2/3, 0), which inversion joins.
-	expect(t, r, "lowest three levels", []float64{e[0], e[1], e[3], e[4]}, want)
-	if e[2]-e[0] > 1e-10 {
-		t.Errorf("the lowest level is not threefold: %v", e[:4])
-	}
 }
 
 func TestImpossibleMagnetsAreRefused(t *testing.T) {

@@ -92,49 +92,10 @@ func TestTransverseIsingParities(t *testing.T) {
 	}
 }
 
-// compass returns Kitaev's honeycomb model (Ann. Phys. 321, 2, 2006) on a torus:
-// z-bonds A(r)-B(r), x-bonds A(r)-B(r-a1), y-bonds A(r)-B(r-a2).
-func compass(t *testing.T, l1, l2 int, k [3]float64) (*lattice.Cluster, operator.Operator) {
-	t.Helper()
-	c := built[*lattice.Cluster](t)(lattice.Torus(lattice.Honeycomb(), l1, l2))
-	o := operator.On(onSites(t, c, basis.SpinHalf()))
-	var terms []operator.Operator
-	for x := range l1 {
-		for y := range l2 {
-			a := c.SiteAt([2]int{x, y}, 0)
-			bx, by, bz := c.SiteAt([2]int{x - 1, y}, 1), c.SiteAt([2]int{x, y - 1}, 1), c.SiteAt([2]int{x, y}, 1)
-			terms = append(terms, o.Sx(a).Times(o.Sx(bx)).Scale(complex(k[0], 0)),
-				o.Sy(a).Times(o.Sy(by)).Scale(complex(k[1], 0)), o.Sz(a).Times(o.Sz(bz)).Scale(complex(k[2], 0)))
-		}
-	}
-	return c, operator.Sum(terms).NormalOrdered()
-}
-
 // distinct drops levels that repeat the one before.
 func distinct(levels []float64) []float64 {
 	slices.Sort(levels)
 	return slices.CompactFunc(levels, func(a, b float64) bool { return math.Abs(a-b) < 1e-7 })
-}
-
-func TestCompassModelOnLargerTori(t *testing.T) {
-	if testing.Short() {
-		t.Skip("eighteen spins without a charge")
-	}
-	for _, c := range []struct {
-		l1, l2 int
-		k      [3]float64
-		want   []float64 // distinct energies
-	}{
-		{3, 2, [3]float64{-1, -1, -2.5}, []float64{-4.2020478524774, -4.1899354926729, -4.169380137321}},
-		{3, 3, [3]float64{1, 1, 1}, []float64{-3.5728756555323, -3.5186595939954}},
-	} {
-		cluster, h := compass(t, c.l1, c.l2, c.k)
-		var all []float64
-		for _, k := range cluster.Momenta() {
-			all = append(all, lowest(t, h, basis.Sector{Symmetries: cluster.Sector(k)}, 3)...)
-		}
-		agree(t, fmt.Sprintf("%d×%d, K = %v", c.l1, c.l2, c.k), distinct(all), c.want, 1e-8)
-	}
 }
 
 // The orthogonal dimer model of Shastry and Sutherland (Physica B+C 108, 1069, 1981):

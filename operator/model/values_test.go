@@ -3,6 +3,8 @@ package model
 import (
 	"context"
 	"encoding/json"
+	"flag"
+	"fmt"
 	"math"
 	"os"
 	"sort"
@@ -22,6 +24,10 @@ type record struct {
 	Tolerance float64
 	Data      struct {
 		LowestByMomentum map[string][]float64 `json:"lowest_by_momentum"`
+		Lowest           map[string]float64   // by total momentum
+		Momentum         int                  `json:"k_index"`
+		Momenta          []int                `json:"k_indices"`
+		Counts           []int
 		Fields           []float64
 		Triangles        [][3]int
 		Triplet          float64 `json:"E_triplet"`
@@ -30,8 +36,13 @@ type record struct {
 	}
 }
 
-var records = map[string]record{}
+var (
+	records = map[string]record{}
+	read    = map[string]bool{} // which of them a test has asked for
+)
 
+// TestMain reads the check values, and fails a complete run in which no test asks for
+// one of them.
 func TestMain(m *testing.M) {
 	data, err := os.ReadFile("testdata/values.json")
 	if err != nil {
@@ -47,7 +58,26 @@ func TestMain(m *testing.M) {
 	for _, r := range file.Records {
 		records[r.ID] = r
 	}
-	os.Exit(m.Run())
+	code := m.Run()
+	if code == 0 && complete() {
+		for id := range records {
+			if !read[id] {
+				fmt.Fprintf(os.Stderr, "no test reads the check value %s\n", id)
+				code = 1
+			}
+		}
+	}
+	os.Exit(code)
+}
+
+// complete reports whether nothing was left out of this run.
+func complete() bool {
+	for _, name := range []string{"test.run", "test.skip", "test.list", "test.fuzz"} {
+		if flag.Lookup(name).Value.String() != "" {
+			return false
+		}
+	}
+	return !testing.Short()
 }
 
 // value reads the value of a record into a new T.
@@ -57,6 +87,7 @@ func value[T any](t *testing.T, id string) (v T, r record) {
 	if !ok {
 		t.Fatalf("no check value %q", id)
 	}
+	read[id] = true
 	if err := json.Unmarshal(r.Value, &v); err != nil {
 		t.Fatalf("%s: %v", id, err)
 	}
@@ -145,6 +176,36 @@ func byMomentum(t *testing.T, h operator.Operator, c *lattice.Cluster, sector ba
 		list = append(list, spectrum(t, h, sector))
 	}
 	return list
+}
+
+// lowestByMomentum returns the k lowest energies of every momentum sector of a
+// cluster, by the index of the momentum, found by Lanczos.
+func lowestByMomentum(t *testing.T, h operator.Operator, c *lattice.Cluster, sector basis.Sector, k int) [][]float64 {
+	t.Helper()
+	var list [][]float64
+	for _, momentum := range c.Momenta() {
+		sector.Symmetries = c.Sector(momentum)
+		list = append(list, lowest(t, h, sector, k))
+	}
+	return list
+}
+
+// without returns the levels of a that are not in b, both ascending, one for one: with
+// the levels at S_z = 0 and 1, those of total spin 0.
+func without(t *testing.T, a, b []float64) []float64 {
+	t.Helper()
+	var rest []float64
+	for _, e := range a {
+		if len(b) > 0 && math.Abs(e-b[0]) < 1e-8 {
+			b = b[1:]
+		} else {
+			rest = append(rest, e)
+		}
+	}
+	if len(b) > 0 {
+		t.Errorf("the level %v has no partner", b[0])
+	}
+	return rest
 }
 
 // merged returns all numbers in ascending order.
