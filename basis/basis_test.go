@@ -541,7 +541,11 @@ func TestDescriptionsRebuildTheBasis(t *testing.T) {
 		if back.Fingerprint() != b.Fingerprint() || back.Len() != b.Len() || !back.Space().Equal(s) {
 			t.Fatalf("%s comes back as another basis", data)
 		}
-		checkList(t, back, b.list, allOf(s))
+		list := make([]Configuration, b.Len())
+		for i := range list {
+			list[i] = b.At(i)
+		}
+		checkList(t, back, list, allOf(s))
 	}
 	for _, bad := range []string{
 		``, `[]`, `{}`, `{"sites":[{"kind":"spin","levels":2,"count":-1}]}`,

@@ -16,8 +16,11 @@ func (b *Basis) Representative(c Configuration) Configuration {
 	if b.sym == nil {
 		return c
 	}
-	r, _ := b.sym.smallest(uint64(c))
-	return Configuration(r)
+	r, _, ok := b.sym.smallest(uint64(c))
+	if !ok {
+		return c
+	}
+	return b.sym.configuration(r)
 }
 
 // Component returns the state that the product state c belongs to and its
@@ -36,21 +39,21 @@ func (b *Basis) Component(c Configuration) (i int, factor complex128, ok bool) {
 	if !ok {
 		return 0, 0, false
 	}
-	z := b.sym.roots[phase]
+	z := b.sym.units.roots[phase]
 	weight := math.Sqrt(float64(b.Stabiliser(i)) / float64(b.sym.order))
 	return i, complex(real(z)*weight, -imag(z)*weight), true
 }
 
 // locate returns the state of c and χ(h)*·ε as a number of phase units.
 func (b *Basis) locate(c Configuration) (i int, phase uint32, ok bool) {
-	if _, allowed := b.rank.rank(c); !allowed {
+	r, p, ok := b.sym.smallest(uint64(c))
+	if !ok {
 		return 0, 0, false
 	}
-	r, h := b.sym.smallest(uint64(c))
-	if i, ok = b.Index(Configuration(r)); !ok {
+	if i, ok = b.find(r); !ok {
 		return 0, 0, false
 	}
-	return i, b.sym.phase(h, uint64(c)), true
+	return i, b.sym.phase(uint64(c), p), true
 }
 
 // Orbit appends to dst every product state of state i with its factor, the
@@ -63,13 +66,17 @@ func (b *Basis) Orbit(i int, dst []Component) []Component {
 	}
 	weight := math.Sqrt(float64(b.Stabiliser(i)) / float64(b.sym.order))
 	first, repeats := len(dst), b.Stabiliser(i) > 1
-	for g := range b.sym.order {
-		c := Configuration(b.sym.image(g, uint64(r)))
-		if repeats && seen(dst[first:], c) {
-			continue
+	s := b.sym
+	for j := range s.cosets {
+		w := s.enter.image(j, uint64(r))
+		for h := range s.kept {
+			c := s.configuration(s.keep.image(h, w))
+			if repeats && seen(dst[first:], c) {
+				continue
+			}
+			z := s.units.roots[s.phase(uint64(r), path{j, h, 0})]
+			dst = append(dst, Component{c, complex(real(z)*weight, imag(z)*weight)})
 		}
-		z := b.sym.roots[b.sym.phase(g, uint64(r))]
-		dst = append(dst, Component{c, complex(real(z)*weight, imag(z)*weight)})
 	}
 	return dst
 }
@@ -89,7 +96,7 @@ func (b *Basis) Phases() []complex128 {
 	if b.sym == nil {
 		return []complex128{1}
 	}
-	return b.sym.roots
+	return b.sym.units.roots
 }
 
 // Locate is what products are made of: it returns the state i that c belongs

@@ -11,23 +11,48 @@ import (
 // together; the parts do not depend on the number of workers.
 const enumerationParts = 512
 
-// enumerate lists the representatives, part by part, in ascending order.
+// checkEvery is the number of candidates between two looks at the context.
+const checkEvery = 1 << 14
+
+// portion is what one part of the enumeration found.
+type portion struct {
+	list []uint64
+	stab []uint16
+}
+
+// enumerate lists the words of the basis, part by part, in ascending order.
 func (b *Basis) enumerate(ctx context.Context, o Options) error {
-	parts := b.ladder.starts(enumerationParts)
-	found := make([]portion, len(parts))
-	bans := newBans(b.space, b.sector.Constraints)
+	bans := newBans(b.words(), b.sector.Constraints)
+	if b.sym == nil {
+		parts := b.ladder.starts(enumerationParts)
+		return b.collect(ctx, o, len(parts), b.ladder.total, func(part int, seen *sighting) portion {
+			return b.allowed(parts[part], bans, seen)
+		})
+	}
+	e := newExtender(b, bans)
+	parts := e.parts(enumerationParts)
+	return b.collect(ctx, o, len(parts), b.numbers.total, func(part int, seen *sighting) portion {
+		return e.extend(parts[part], seen)
+	})
+}
+
+// collect makes all parts, each by one of the workers, and joins them.
+func (b *Basis) collect(ctx context.Context, o Options, parts int, candidates uint64, part func(i int, seen *sighting) portion) error {
+	found := make([]portion, parts)
 	var next, visited atomic.Int64
 	var wg sync.WaitGroup
-	report := newReporter(o.Progress, "enumerate", int64(b.ladder.total))
+	report := newReporter(o.Progress, "enumerate", int64(candidates))
 	for range o.Workers {
 		wg.Go(func() {
+			seen := &sighting{ctx: ctx, left: checkEvery, tell: func(n int64) { report.tell(visited.Add(n)) }}
 			for {
-				p := int(next.Add(1)) - 1
-				if p >= len(parts) || ctx.Err() != nil {
-					return
+				i := int(next.Add(1)) - 1
+				if i >= parts || ctx.Err() != nil {
+					break
 				}
-				found[p] = b.collect(ctx, parts[p], bans, func(n int64) { report.tell(visited.Add(n)) })
+				found[i] = part(i, seen)
 			}
+			seen.tell(int64(checkEvery - seen.left))
 		})
 	}
 	wg.Wait()
@@ -38,42 +63,32 @@ func (b *Basis) enumerate(ctx context.Context, o Options) error {
 	return nil
 }
 
-// portion is what one part of the enumeration found.
-type portion struct {
-	list []Configuration
-	stab []uint16
+// sighting counts the candidates that one worker visits.
+type sighting struct {
+	ctx  context.Context
+	left int
+	tell func(n int64)
 }
 
-// checkEvery is the number of configurations between two looks at the context.
-const checkEvery = 1 << 14
-
-// collect lists the representatives of one part; visited is told how many
-// configurations went by since it was last called.
-func (b *Basis) collect(ctx context.Context, from start, bans *bans, visited func(n int64)) portion {
-	var p portion
-	if !bans.allow(from.prefix) {
-		return p
-	}
-	countdown := checkEvery
-	b.ladder.walk(from, bans, func(c Configuration) bool {
-		if countdown--; countdown == 0 {
-			countdown = checkEvery
-			visited(checkEvery)
-			if ctx.Err() != nil {
-				return false
-			}
-		}
-		if b.sym == nil {
-			p.list = append(p.list, c)
-			return true
-		}
-		if size, smallest := b.sym.stabiliser(uint64(c)); smallest && size > 0 {
-			p.list = append(p.list, c)
-			p.stab = append(p.stab, uint16(size-1))
-		}
+// more counts a candidate; it is false when the context has ended.
+func (s *sighting) more() bool {
+	if s.left--; s.left > 0 {
 		return true
-	})
-	visited(int64(checkEvery - countdown))
+	}
+	s.left = checkEvery
+	s.tell(checkEvery)
+	return s.ctx.Err() == nil
+}
+
+// allowed lists the configurations of one part that no constraint forbids.
+func (b *Basis) allowed(from start, bans *bans, seen *sighting) portion {
+	var p portion
+	if bans.allow(from.prefix) {
+		b.ladder.walk(from, bans, func(c Configuration) bool {
+			p.list = append(p.list, uint64(c))
+			return seen.more()
+		})
+	}
 	return p
 }
 
@@ -82,7 +97,7 @@ func (b *Basis) join(found []portion) {
 	for _, p := range found {
 		b.length += len(p.list)
 	}
-	b.list = make([]Configuration, 0, b.length)
+	b.list = make([]uint64, 0, b.length)
 	if b.sym != nil {
 		b.stab = make([]uint16, 0, b.length)
 	}
@@ -91,7 +106,11 @@ func (b *Basis) join(found []portion) {
 		b.stab = append(b.stab, found[i].stab...)
 		found[i] = portion{}
 	}
-	b.index = newIndex(b.list, b.ladder.total, b.rank)
+	if b.sym == nil {
+		b.index = newIndex(b.list, b.ladder.total, func(w uint64) (uint64, bool) { return b.rank.rank(Configuration(w)) })
+		return
+	}
+	b.index = newIndex(b.list, b.numbers.total, b.numbers.numberOf)
 }
 
 // reporter passes progress on, at most ten times a second.

@@ -1,47 +1,67 @@
 package basis
 
 import (
+	"math"
 	"math/bits"
 	"slices"
 )
 
-// index finds the number of a representative. Where representatives are not
-// too rare among the configurations of the charges it is a set of bits over
-// the ranks of these, with the number of representatives before each word;
-// otherwise the list itself is searched.
+// index finds the place of a word in the list. Where listed words are not too
+// rare among their candidates it is a set of bits over the numbers of these, in
+// blocks of four words that begin with the number of listed ones before them:
+// 1⅓ bits a candidate. Otherwise the list itself is searched.
 type index struct {
-	bits   []uint64
-	before []uint32
+	blocks []indexBlock
 }
 
-// rarest is the largest number of candidates a representative for which the
-// set of bits is used: it then costs at most as much as the list.
+// blockBits is the number of candidates of a block.
+const blockBits = 3 * 64
+
+// indexBlock holds the bits of a block behind its head: the number of listed
+// words before the block from bit 24 on, and that before each of its words
+// within the block, in one byte for each word.
+type indexBlock [4]uint64
+
+// rarest is the largest number of candidates a listed word for which the set of
+// bits is used: it then costs about as much as the list.
 const rarest = 64
 
-func newIndex(list []Configuration, candidates uint64, rank *ranker) index {
-	if len(list) == 0 || candidates/uint64(len(list)) > rarest || len(list) > 1<<32-1 {
+// newIndex makes the index of an ascending list of words.
+func newIndex(list []uint64, candidates uint64, number func(w uint64) (uint64, bool)) index {
+	if len(list) == 0 || candidates/uint64(len(list)) > rarest || len(list) > math.MaxInt32 {
 		return index{}
 	}
-	x := index{bits: make([]uint64, candidates/64+1), before: make([]uint32, candidates/64+1)}
-	for _, c := range list {
-		r, _ := rank.rank(c)
-		x.bits[r/64] |= 1 << (r % 64)
+	x := index{blocks: make([]indexBlock, candidates/blockBits+1)}
+	for _, w := range list {
+		n, _ := number(w)
+		x.blocks[n/blockBits][1+n%blockBits/64] |= 1 << (n % 64)
 	}
-	var sum uint32
-	for w, word := range x.bits {
-		x.before[w] = sum
-		sum += uint32(bits.OnesCount64(word))
+	var sum uint64
+	for i := range x.blocks {
+		k := &x.blocks[i]
+		first := uint64(bits.OnesCount64(k[1]))
+		second := first + uint64(bits.OnesCount64(k[2]))
+		k[0] = sum<<24 | second<<16 | first<<8
+		sum += second + uint64(bits.OnesCount64(k[3]))
 	}
 	return x
 }
 
-func (x *index) find(list []Configuration, c Configuration, rank uint64) (int, bool) {
-	if x.bits == nil {
-		i, ok := slices.BinarySearch(list, c)
+// find returns the place of w, whose number is given.
+func (x *index) find(list []uint64, w, number uint64) (int, bool) {
+	if x.blocks == nil {
+		i, ok := slices.BinarySearch(list, w)
 		return i, ok
 	}
-	word, bit := x.bits[rank/64], uint64(1)<<(rank%64)
-	return int(x.before[rank/64]) + bits.OnesCount64(word&(bit-1)), word&bit != 0
+	return x.place(number)
 }
 
-func (x *index) memory() int64 { return int64(len(x.bits))*8 + int64(len(x.before))*4 }
+// place returns the place of the word of a number in the set of bits.
+func (x *index) place(number uint64) (int, bool) {
+	k := &x.blocks[number/blockBits]
+	at := number % blockBits / 64
+	word, bit := k[at+1], uint64(1)<<(number%64)
+	return int(k[0]>>24+k[0]>>(8*at)&0xff) + bits.OnesCount64(word&(bit-1)), word&bit != 0
+}
+
+func (x *index) memory() int64 { return int64(len(x.blocks)) * 32 }

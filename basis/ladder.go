@@ -187,8 +187,12 @@ func (l *ladder) rank(c Configuration) (rank uint64, ok bool) {
 	if l.space.bits < MostBits && c>>l.space.bits != 0 {
 		return 0, false
 	}
-	at := int32(0)
-	for m := len(l.floors) - 1; m > 0; m-- {
+	return l.rankFrom(len(l.floors)-1, 0, c)
+}
+
+// rankFrom is rank for the modes below a floor, from one of its rungs.
+func (l *ladder) rankFrom(floor int, at int32, c Configuration) (rank uint64, ok bool) {
+	for m := floor; m > 0; m-- {
 		rung := &l.floors[m][at]
 		level := l.space.modes[m-1].Level(c)
 		if level >= len(rung.next) || rung.next[level] < 0 {

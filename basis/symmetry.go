@@ -1,51 +1,42 @@
 package basis
 
-import (
-	"fmt"
-	"math/bits"
+import "ketloom/basis/group"
 
-	"ketloom/basis/group"
-)
-
-// symmetry is the group of a sector, compiled into tables that give the image
-// of a configuration under an element in a few look-ups, one a chunk of
-// neighbouring modes.
+// symmetry is the group of a sector, compiled for the folding of words (see
+// patterns). Every element is h·g_j, with h in the group H that keeps the upper
+// places and g_j from one of its cosets; the first of both is the identity.
 type symmetry struct {
-	order  int
-	chunks []chunk
-	stride int // entries an element
+	order   int
+	words   *layout
+	outside uint64 // bits that no configuration has
+	cut     int    // bits below the upper places
+	low     uint64 // mask of these
+	lows    int    // chunks of these
 
-	images  []uint64 // image of the bits of a chunk
-	inverts []uint64 // fermions: xor of the masks of modes that they overtake
-	phases  []uint32 // phase of the bits of a chunk, in units of 1/denominator
-	chi     []uint32 // χ(g)*, in the same units
+	enter    *images  // by j: configuration to word of g_j
+	exchange *images  // by j: word to word of g_j
+	keep     *images  // by h: word to word
+	short    []uint32 // by h: what keep does to the lower bits, where 32 bits hold it
+	leave    *images  // word to configuration; nil where they are equal
+	patterns *patterns
 
-	denominator uint32
-	roots       []complex128 // exp(2πi j/denominator)
+	cosets, kept int
+	shortStride  int
+	ofCoset      []uint32 // χ(g_j)*, in phase units
+	ofKept       []uint32 // χ(h)*
+	units        *units
+	plain        bool // no phases but those of χ
 }
 
-// chunk is a run of neighbouring modes that one look-up covers.
-type chunk struct {
-	shift  uint
-	mask   uint64
-	offset int
-	modes  []int
-}
-
-// chunkBits is the widest chunk of more than one mode.
-const chunkBits = 9
-
-// mostDenominator bounds the common denominator of all phases of a sector.
-const mostDenominator = 1 << 20
+// path names the element t·h·g_j.
+type path struct{ j, h, t int }
 
 // newSymmetry compiles the elements that the generators span; a group of one
-// element gives nil.
-func newSymmetry(space *Space, generators []group.Eigenvalue, elements []group.Element) (*symmetry, error) {
+// element gives nil. total is the number of configurations of the charges.
+func newSymmetry(space *Space, generators []group.Eigenvalue, elements []group.Element, total uint64) (*symmetry, error) {
 	if len(elements) == 1 {
 		return nil, nil
 	}
-	s := &symmetry{order: len(elements)}
-	s.cut(space)
 	movers := make([]*Mover, len(elements))
 	for g, e := range elements {
 		mv, err := space.Resolve(e.Action)
@@ -54,69 +45,285 @@ func newSymmetry(space *Space, generators []group.Eigenvalue, elements []group.E
 		}
 		movers[g] = mv
 	}
-	if err := s.setDenominator(space, elements, movers); err != nil {
+	u, err := newUnits(space, elements, movers)
+	if err != nil {
 		return nil, err
 	}
-	entries := len(elements) * s.stride
-	s.images = make([]uint64, entries)
-	if space.fermions != 0 {
-		s.inverts = make([]uint64, entries)
-	}
-	if s.denominator > 1 {
-		s.phases = make([]uint32, entries)
-	}
-	for g, mv := range movers {
-		s.chi = append(s.chi, s.units(elements[g].Turn.Neg()))
-		s.fill(space, g, mv)
-	}
-	if err := s.resolveSigns(generators, elements, movers); err != nil {
+	chi, err := characters(space, generators, elements, movers, u)
+	if err != nil {
 		return nil, err
 	}
+	s := &symmetry{order: len(elements), units: u}
+	if space.bits < MostBits {
+		s.outside = ^uint64(0) << space.bits
+	}
+	s.words, s.cut = upperPlaces(space, movers, total)
+	s.low = 1<<s.cut - 1
+	s.split(space, elements, movers, chi)
 	return s, nil
 }
 
-// resolveSigns makes the elements multiply as operators do. Where fermions are
-// exchanged with holes, the product of two symmetries can be minus the symmetry
-// that their composition names; the sign is then put into its character. A
-// group in which the identity would come out as minus one has no such signs.
-func (s *symmetry) resolveSigns(generators []group.Eigenvalue, elements []group.Element, movers []*Mover) error {
-	if !anyFlipped(movers) {
-		return nil
+// split divides the group into H and its cosets and makes the tables.
+func (s *symmetry) split(space *Space, elements []group.Element, movers []*Mover, chi []uint32) {
+	var upper uint64
+	for at, m := range s.words.mode {
+		if s.words.space.modes[at].Shift >= s.cut {
+			upper |= 1 << m
+		}
 	}
+	var kept, cosets []int
+	seen := map[uint64]bool{}
+	for g, mv := range movers {
+		from := preimage(mv, upper)
+		if from == upper {
+			kept = append(kept, g)
+		}
+		if !seen[from] {
+			seen[from] = true
+			cosets = append(cosets, g)
+		}
+	}
+	choose := func(list []int) (mv []*Mover, phases []uint32) {
+		for _, g := range list {
+			mv, phases = append(mv, movers[g]), append(phases, chi[g])
+		}
+		return mv, phases
+	}
+	plain := natural(space)
+	var keepers, enterers []*Mover
+	keepers, s.ofKept = choose(kept)
+	enterers, s.ofCoset = choose(cosets)
+	s.kept, s.cosets = len(kept), len(cosets)
+	s.enter = newImages(plain, s.words, 0, enterers, s.units)
+	s.exchange = newImages(s.words, s.words, s.cut, enterers, nil)
+	s.keep = newImages(s.words, s.words, s.cut, keepers, s.units)
+	s.plain = s.enter.plain() && s.keep.plain()
+	for _, c := range s.keep.chunks {
+		if int(c.shift) < s.cut {
+			s.lows++
+		}
+	}
+	s.shorten()
+	if !s.words.isNatural() {
+		s.leave = newImages(s.words, plain, s.cut, movers[:1], nil)
+	}
+	s.patterns = newPatterns(s.words, s.cut, s.keep, s.kept, inverses(elements, kept))
+}
+
+// shorten copies the part of the tables of H that folding needs most into a
+// small one.
+func (s *symmetry) shorten() {
+	if s.cut > 32 || s.lows == 0 {
+		return
+	}
+	last := s.keep.chunks[s.lows-1]
+	s.shortStride = last.offset + int(last.mask) + 1
+	s.short = make([]uint32, 0, s.kept*s.shortStride)
+	for h := range s.kept {
+		for _, bits := range s.keep.bits[h*s.keep.stride : h*s.keep.stride+s.shortStride] {
+			s.short = append(s.short, uint32(bits))
+		}
+	}
+}
+
+// lower returns what element h of H makes of the lower bits of w.
+func (s *symmetry) lower(h int, w uint64) uint64 {
+	if s.short == nil {
+		return s.keep.part(h, s.lows, w)
+	}
+	table := s.short[h*s.shortStride : (h+1)*s.shortStride]
+	var out uint32
+	for i := range s.keep.chunks[:s.lows] {
+		k := &s.keep.chunks[i]
+		out |= table[k.offset+int(w>>k.shift&k.mask)]
+	}
+	return uint64(out)
+}
+
+// inverses returns, for each of the listed elements, the place of its inverse
+// in the list.
+func inverses(elements []group.Element, list []int) []int {
 	place := map[string]int{}
-	for g, e := range elements {
-		place[e.Action.Key()] = g
+	for at, g := range list {
+		place[elements[g].Action.Key()] = at
 	}
-	bare := append([]uint32(nil), s.chi...)
-	sign := make([]int, len(elements)) // 0: not known yet
-	sign[0] = 1
-	for done, queue := 0, []int{0}; done < len(queue); done++ {
-		g := queue[done]
-		for i, e := range generators {
-			a := place[e.Generator.Key()]
-			h := place[e.Generator.Compose(elements[g].Action).Key()]
-			// Both ways to the same product state; what differs is the sign.
-			twice := s.phase(g, 0) - bare[g] + s.phase(a, s.image(g, 0)) - bare[a]
-			once := s.phase(h, 0) - bare[h]
-			value := sign[g]
-			if (twice+4*s.denominator-once)%s.denominator != 0 {
-				value = -value
-			}
-			if sign[h] != 0 && sign[h] != value {
-				return fmt.Errorf("basis: the symmetries exchange occupied and empty fermion modes so that generator %d closes only up to a sign; give it the phase of a quarter turn on one level of one site more, or drop it", i)
-			}
-			if sign[h] == 0 {
-				sign[h] = value
-				queue = append(queue, h)
-			}
+	out := make([]int, len(list))
+	for at, g := range list {
+		out[at] = place[elements[g].Action.Inverse().Key()]
+	}
+	return out
+}
+
+// word returns the word of a configuration.
+func (s *symmetry) word(c Configuration) uint64 {
+	if s.leave == nil {
+		return uint64(c)
+	}
+	return s.enter.image(0, uint64(c))
+}
+
+// configuration returns the configuration of a word.
+func (s *symmetry) configuration(w uint64) Configuration {
+	if s.leave == nil {
+		return Configuration(w)
+	}
+	return Configuration(s.leave.image(0, w))
+}
+
+// smallest returns the smallest word of the orbit of a configuration, and an
+// element that carries the configuration to it. ok is false where c is no
+// configuration of the space.
+func (s *symmetry) smallest(c uint64) (r uint64, p path, ok bool) {
+	if c&s.outside != 0 {
+		return 0, p, false
+	}
+	class, low := uint32(noPattern), ^uint64(0)
+	for j := range s.cosets {
+		w := s.enter.image(j, c)
+		k := s.patterns.class[w>>s.cut]
+		if k > class || k == noPattern {
+			continue
+		}
+		if k < class {
+			class, low = k, ^uint64(0)
+		}
+		here := path{j, int(s.patterns.via[w>>s.cut]), 0}
+		v := s.lower(here.h, w)
+		if v < low {
+			low, p = v, here
+		}
+		if s.patterns.stab[k] != 0 {
+			low, p = s.smallerByStabiliser(k, v, low, here, p)
 		}
 	}
-	for h, v := range sign {
-		if v < 0 {
-			s.chi[h] = (s.chi[h] + s.denominator/2) % s.denominator
+	if class == noPattern {
+		return 0, p, false
+	}
+	return uint64(s.patterns.least[class])<<s.cut | low, p, true
+}
+
+// smallerByStabiliser tries the elements that keep the pattern of the class on
+// the lower bits v, reached by the path here; it returns the smallest lower
+// bits known, and the path there.
+func (s *symmetry) smallerByStabiliser(class uint32, v, low uint64, here, best path) (uint64, path) {
+	s.eachKeeping(class, func(t int) bool {
+		if x := s.lower(t, v); x < low {
+			low, best = x, path{here.j, here.h, t}
+		}
+		return true
+	})
+	return low, best
+}
+
+// eachKeeping calls visit with the elements of H, but the identity, that keep
+// the smallest pattern of the class, until it returns false; it reports whether
+// it went through.
+func (s *symmetry) eachKeeping(class uint32, visit func(t int) bool) bool {
+	if stab := s.patterns.stab[class]; stab != everyElement {
+		for _, t := range s.patterns.keeping[stab] {
+			if !visit(int(t)) {
+				return false
+			}
+		}
+		return true
+	}
+	least := uint64(s.patterns.least[class])
+	for t := 1; t < s.kept; t++ {
+		if s.keep.image(t, least<<s.cut)>>s.cut == least && !visit(t) {
+			return false
 		}
 	}
-	return nil
+	return true
+}
+
+// phase returns χ(g)*·ε in phase units, where g = t·h·g_j makes ε|image⟩ of the
+// configuration c.
+func (s *symmetry) phase(c uint64, p path) uint32 {
+	sum := uint64(s.ofCoset[p.j]) + uint64(s.ofKept[p.h]) + uint64(s.ofKept[p.t])
+	if !s.plain {
+		half := s.units.half()
+		sum += uint64(s.enter.phase(p.j, c, half))
+		w := s.enter.image(p.j, c)
+		sum += uint64(s.keep.phase(p.h, w, half))
+		w = s.keep.image(p.h, w)
+		sum += uint64(s.keep.phase(p.t, w, half))
+	}
+	if s.units.denominator == 1 {
+		return 0
+	}
+	return uint32(sum % uint64(s.units.denominator))
+}
+
+// stabiliser reports whether the word r, whose pattern is the smallest of the
+// class, is the smallest of its orbit, and, if it is, the number of elements that
+// keep it; 0 where their phases cancel. bases are those of the pattern.
+func (s *symmetry) stabiliser(r uint64, class uint32, bases []uint64) (size int, smallest bool) {
+	low, cancel := r&s.low, false
+	size = 1
+	count := func(v uint64, p path) bool {
+		if v == low {
+			size++
+			cancel = cancel || s.phase(uint64(s.configuration(r)), p) != 0
+		}
+		return v >= low
+	}
+	stab := s.patterns.stab[class]
+	if stab != 0 && !s.eachKeeping(class, func(t int) bool { return count(s.lower(t, low), path{0, 0, t}) }) {
+		return 0, false
+	}
+	for j := 1; j < s.cosets; j++ {
+		w := bases[j] | s.exchange.part(j, s.lows, r)
+		k := s.patterns.class[w>>s.cut]
+		if k > class {
+			continue
+		}
+		if k < class {
+			return 0, false
+		}
+		h := int(s.patterns.via[w>>s.cut])
+		v := s.lower(h, w)
+		if !count(v, path{j, h, 0}) || stab != 0 && !s.eachKeeping(class, func(t int) bool { return count(s.lower(t, v), path{j, h, t}) }) {
+			return 0, false
+		}
+	}
+	if cancel {
+		return 0, true
+	}
+	return size, true
+}
+
+// bases fills dst with the images of an upper pattern under the cosets.
+func (s *symmetry) bases(pattern uint64, dst []uint64) []uint64 {
+	w := pattern << s.cut
+	dst = dst[:0]
+	for j := range s.cosets {
+		dst = append(dst, s.exchange.rest(j, s.lows, w))
+	}
+	return dst
+}
+
+func (s *symmetry) memory() int64 {
+	total := int64(len(s.short))*4 + s.enter.memory() + s.exchange.memory() + s.keep.memory() + s.patterns.memory()
+	if s.leave != nil {
+		total += s.leave.memory()
+	}
+	return total + int64(len(s.units.roots))*16
+}
+
+// characters returns χ(g)* of the elements in phase units. The elements are made
+// to multiply as operators do: where fermions are exchanged with holes, the
+// product of two symmetries can be minus the symmetry that their composition
+// names; the sign is then put into its character. A group in which the identity
+// would come out as minus one has no such signs.
+func characters(space *Space, generators []group.Eigenvalue, elements []group.Element, movers []*Mover, u *units) ([]uint32, error) {
+	chi := make([]uint32, len(elements))
+	for g := range elements {
+		chi[g] = u.of(elements[g].Turn.Neg())
+	}
+	if !anyFlipped(movers) {
+		return chi, nil
+	}
+	return resolveSigns(space, generators, elements, movers, chi, u)
 }
 
 func anyFlipped(movers []*Mover) bool {
@@ -128,193 +335,4 @@ func anyFlipped(movers []*Mover) bool {
 		}
 	}
 	return false
-}
-
-// cut divides the modes into chunks.
-func (s *symmetry) cut(space *Space) {
-	for m := 0; m < len(space.modes); {
-		c := chunk{shift: uint(space.modes[m].Shift), offset: s.stride}
-		bits := 0
-		for ; m < len(space.modes) && (bits == 0 || bits+space.modes[m].Width <= chunkBits); m++ {
-			bits += space.modes[m].Width
-			c.modes = append(c.modes, m)
-		}
-		c.mask = 1<<bits - 1
-		s.stride += 1 << bits
-		s.chunks = append(s.chunks, c)
-	}
-}
-
-// setDenominator finds the common denominator of all phases; it is even where
-// signs of fermions occur.
-func (s *symmetry) setDenominator(space *Space, elements []group.Element, movers []*Mover) error {
-	d := int64(1)
-	if space.fermions != 0 {
-		d = 2
-	}
-	include := func(t group.Turn) error {
-		den := t.Add(group.Turn{}).Den
-		d = d / greatestDivisor(d, den) * den
-		if d > mostDenominator {
-			return fmt.Errorf("basis: the phases of the symmetries have a common denominator above %d; use simpler fractions of a turn", mostDenominator)
-		}
-		return nil
-	}
-	for g, e := range elements {
-		if err := include(e.Turn); err != nil {
-			return err
-		}
-		for _, list := range movers[g].Phases {
-			for _, t := range list {
-				if err := include(t); err != nil {
-					return err
-				}
-			}
-		}
-	}
-	s.denominator = uint32(d)
-	s.roots = make([]complex128, d)
-	for j := range s.roots {
-		s.roots[j] = group.NewTurn(int64(j), d).Complex()
-	}
-	return nil
-}
-
-func greatestDivisor(a, b int64) int64 {
-	for b != 0 {
-		a, b = b, a%b
-	}
-	return a
-}
-
-// units writes a phase as a number of 1/denominator turns.
-func (s *symmetry) units(t group.Turn) uint32 {
-	t = t.Add(group.Turn{}) // normalised
-	return uint32(t.Num * (int64(s.denominator) / t.Den))
-}
-
-// fill computes the tables of element g.
-func (s *symmetry) fill(space *Space, g int, mv *Mover) {
-	overtakes, vacuum := reordering(space, mv)
-	base := g * s.stride
-	for _, c := range s.chunks {
-		for value := uint64(0); value <= c.mask; value++ {
-			at := base + c.offset + int(value)
-			phase := group.Turn{}
-			for _, m := range c.modes {
-				mode := space.modes[m]
-				level := mode.Level(Configuration(value << c.shift))
-				if level >= mode.Levels {
-					continue
-				}
-				to := space.modes[mv.To[m]]
-				s.images[at] |= uint64(mv.Levels[m][level]) << to.Shift
-				phase = phase.Add(mv.Phases[m][level])
-				if mode.Fermionic && level == 1 {
-					s.inverts[at] ^= overtakes[m]
-					if vacuum[m] {
-						phase = phase.Add(group.NewTurn(1, 2))
-					}
-				}
-			}
-			if s.phases != nil {
-				s.phases[at] = s.units(phase)
-			}
-		}
-	}
-}
-
-// reordering returns what the sign of the reordering needs: for each fermionic
-// mode the higher modes whose images lie lower, and whether the number of
-// exchanged (filled) modes below its image is odd.
-func reordering(space *Space, mv *Mover) (overtakes []uint64, vacuum []bool) {
-	overtakes, vacuum = make([]uint64, len(space.modes)), make([]bool, len(space.modes))
-	var filled uint64
-	for m, flipped := range mv.Flipped {
-		if flipped {
-			filled |= 1 << space.modes[mv.To[m]].Shift
-		}
-	}
-	for m, mode := range space.modes {
-		if !mode.Fermionic {
-			continue
-		}
-		to := space.modes[mv.To[m]].Shift
-		for higher := m + 1; higher < len(space.modes); higher++ {
-			if space.modes[higher].Fermionic && space.modes[mv.To[higher]].Shift < to {
-				overtakes[m] |= 1 << space.modes[higher].Shift
-			}
-		}
-		vacuum[m] = bits.OnesCount64(filled&(1<<to-1))%2 == 1
-	}
-	return overtakes, vacuum
-}
-
-// image returns the configuration that element g makes of c.
-func (s *symmetry) image(g int, c uint64) uint64 {
-	table := s.images[g*s.stride : (g+1)*s.stride]
-	var out uint64
-	for i := range s.chunks {
-		k := &s.chunks[i]
-		out |= table[k.offset+int(c>>k.shift&k.mask)]
-	}
-	return out
-}
-
-// phase returns χ(g)*·ε in units of 1/denominator, where g|c⟩ = ε|image⟩.
-func (s *symmetry) phase(g int, c uint64) uint32 {
-	sum := s.chi[g]
-	base := g * s.stride
-	if s.phases != nil {
-		for i := range s.chunks {
-			k := &s.chunks[i]
-			sum += s.phases[base+k.offset+int(c>>k.shift&k.mask)]
-		}
-	}
-	if s.inverts != nil {
-		var x uint64
-		for i := range s.chunks {
-			k := &s.chunks[i]
-			x ^= s.inverts[base+k.offset+int(c>>k.shift&k.mask)]
-		}
-		sum += uint32(bits.OnesCount64(x&c)&1) * (s.denominator / 2)
-	}
-	return sum % s.denominator
-}
-
-// smallest returns the smallest configuration of the orbit of c and the first
-// element that carries c to it.
-func (s *symmetry) smallest(c uint64) (r uint64, g int) {
-	r = c
-	for h := 1; h < s.order; h++ {
-		if image := s.image(h, c); image < r {
-			r, g = image, h
-		}
-	}
-	return r, g
-}
-
-// stabiliser reports whether c is the smallest of its orbit and, if it is,
-// the number of elements that keep it; 0 where their phases cancel.
-func (s *symmetry) stabiliser(c uint64) (size int, smallest bool) {
-	cancel := false
-	size = 1
-	for h := 1; h < s.order; h++ {
-		image := s.image(h, c)
-		if image < c {
-			return 0, false
-		}
-		if image == c {
-			size++
-			cancel = cancel || s.phase(h, c) != 0
-		}
-	}
-	if cancel {
-		return 0, true
-	}
-	return size, true
-}
-
-func (s *symmetry) memory() int64 {
-	return int64(len(s.images)+len(s.inverts))*8 + int64(len(s.phases))*4 + int64(len(s.roots))*16
 }

@@ -1,0 +1,86 @@
+package basis_test
+
+import (
+	"context"
+	"fmt"
+	"math/rand/v2"
+	"testing"
+	"time"
+
+	"ketloom/basis"
+	"ketloom/basis/group"
+	"ketloom/basis/lattice"
+)
+
+// symmetric36 is the sector of all symmetries of the 6×6 square lattice at S_z = 0,
+// even under spin inversion: 576 elements.
+func symmetric36(b *testing.B) (*basis.Space, basis.Sector) {
+	b.Helper()
+	c, err := lattice.Torus(lattice.Square(), 6, 6)
+	if err != nil {
+		b.Fatal(err)
+	}
+	space, err := basis.Uniform(36, basis.SpinHalf())
+	if err != nil {
+		b.Fatal(err)
+	}
+	rotation, err := c.Rotation([2]float64{0, 0}, 4)
+	if err != nil {
+		b.Fatal(err)
+	}
+	reflection, err := c.Reflection([2]float64{0, 0}, [2]float64{1, 0})
+	if err != nil {
+		b.Fatal(err)
+	}
+	symmetries := append(c.Sector(c.Momentum(0, 0)), group.Eigenvalue{Generator: rotation}, group.Eigenvalue{Generator: reflection},
+		group.Eigenvalue{Generator: group.Relabel(36, []int{1, 0})})
+	return space, basis.Sector{Charges: []basis.ChargeValue{space.TwiceSz().Is(0)}, Symmetries: symmetries}
+}
+
+// BenchmarkSquare36 reports the enumeration in seconds and bytes beyond the list,
+// and the search of representative and index in nanoseconds a configuration.
+func BenchmarkSquare36(b *testing.B) {
+	space, sector := symmetric36(b)
+	var made *basis.Basis
+	for b.Loop() {
+		begun := time.Now()
+		var err error
+		if made, err = basis.New(context.Background(), space, sector, nil); err != nil {
+			b.Fatal(err)
+		}
+		b.ReportMetric(time.Since(begun).Seconds(), "s/enumeration")
+	}
+	if made.Len() != 15804956 {
+		b.Fatalf("%d states", made.Len())
+	}
+	b.ReportMetric(float64(made.Memory()-int64(made.Len())*8)/1e6, "MB/beyond-list")
+	r := rand.New(rand.NewPCG(1, 1))
+	list := make([]basis.Configuration, 1<<16)
+	for i := range list {
+		c := made.At(r.IntN(made.Len()))
+		for { // exchange two neighbours
+			k := r.IntN(35)
+			if c>>k&1 != c>>(k+1)&1 {
+				list[i] = c ^ 3<<k
+				break
+			}
+		}
+	}
+	for _, distinct := range []int{1 << 10, 1 << 16} {
+		b.ReportMetric(locating(made, list[:distinct]), fmt.Sprintf("ns/locate-among-%d", distinct))
+	}
+}
+
+// locating returns the nanoseconds a configuration that LocateAll takes.
+func locating(made *basis.Basis, list []basis.Configuration) float64 {
+	begun := time.Now()
+	batch := &basis.Batch{}
+	rounds := 1 << 24 / len(list)
+	for range rounds {
+		for at := 0; at < len(list); at += 64 {
+			batch.Configurations = append(batch.Configurations[:0], list[at:at+64]...)
+			made.LocateAll(batch)
+		}
+	}
+	return float64(time.Since(begun).Nanoseconds()) / float64(rounds*len(list))
+}
