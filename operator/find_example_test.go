@@ -42,5 +42,5 @@ func ExampleOperator_FindSymmetries() {
 	// Output:
 	// order 24 from 3 generators; 2 orbits of sites; spin inversion
 	// [[0 7] [1 2 3 4 5 6]]
-	// 8 of 70 states
+	// 9 of 70 states
 }
