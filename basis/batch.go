@@ -17,7 +17,7 @@ type Batch struct {
 // folded is a configuration on its way to its representative.
 type folded struct {
 	word  uint64 // under g_j; then the lower bits of the representative
-	class uint32
+	entry uint32 // of the smallest pattern reached
 	path  [3]uint16
 	stab  uint16
 	again bool // to be located on its own
@@ -60,31 +60,31 @@ func (b *Basis) locateOne(c Configuration) (int, uint32) {
 // fold finds the representatives of those configurations whose smallest pattern
 // is reached from one coset only; the others are to be located again.
 func (s *symmetry) fold(list []Configuration, found []folded) {
-	p := s.patterns
+	entries := s.patterns.entries
 	for i, c := range list {
 		w := s.enter.image(0, uint64(c)&^s.outside)
-		found[i] = folded{word: w, class: p.class[w>>s.cut]}
+		found[i] = folded{word: w, entry: entries[w>>s.cut]}
 	}
 	for j := 1; j < s.cosets; j++ {
 		for i, c := range list {
 			w := s.enter.image(j, uint64(c)&^s.outside)
-			class := p.class[w>>s.cut]
+			entry := entries[w>>s.cut]
 			f := &found[i]
-			if class < f.class {
-				f.word, f.class, f.path[0], f.again = w, class, uint16(j), false
-			} else if class == f.class {
+			if k := classOf(f.entry); classOf(entry) < k {
+				f.word, f.entry, f.path[0], f.again = w, entry, uint16(j), false
+			} else if classOf(entry) == k {
 				f.again = true
 			}
 		}
 	}
 	for i := range found {
 		f := &found[i]
-		f.path[1] = p.via[f.word>>s.cut]
-		if f.class == noPattern || uint64(list[i])&s.outside != 0 {
+		f.path[1] = viaOf(f.entry)
+		if classOf(f.entry) == noClass || uint64(list[i])&s.outside != 0 {
 			f.again = true
 			continue
 		}
-		f.stab = p.stab[f.class]
+		f.stab = s.patterns.stab[classOf(f.entry)]
 		f.again = f.again || f.stab == everyElement
 	}
 	for i := range found {
@@ -113,7 +113,7 @@ func (b *Basis) lookUp(batch *Batch) {
 		f := &batch.found[i]
 		number, ok := uint64(0), false
 		if !f.again {
-			number, ok = n.number(f.class, f.word)
+			number, ok = n.number(classOf(f.entry), f.word)
 		}
 		batch.States[i] = int(number)
 		if !ok {

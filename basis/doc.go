@@ -42,7 +42,7 @@
 //
 // where the representative r is the smallest configuration of its orbit and
 // G_r its stabiliser; states ascend with r. Configurations are compared as
-// numbers; but where the charges allow more than 2^22 of them and the symmetries
+// numbers; but where the charges allow more than 2^16 of them and the symmetries
 // fall into sublattices, the bits of one sublattice count first (see
 // [Basis.ModeOrder]), which makes hundreds of symmetries as cheap as a few. An orbit on which χ does not restrict to the action of
 // the stabiliser holds no state. A translation by a acts as exp(-ik·a).

@@ -4,6 +4,8 @@ import (
 	"math"
 	"math/bits"
 	"slices"
+
+	"ketloom/basis/pages"
 )
 
 // index finds the place of a word in the list. Where listed words are not too
@@ -32,6 +34,7 @@ func newIndex(list []uint64, candidates uint64, number func(w uint64) (uint64, b
 		return index{}
 	}
 	x := index{blocks: make([]indexBlock, candidates/blockBits+1)}
+	pages.Advise(x.blocks)
 	for _, w := range list {
 		n, _ := number(w)
 		x.blocks[n/blockBits][1+n%blockBits/64] |= 1 << (n % 64)

@@ -1,5 +1,7 @@
 package basis
 
+import "ketloom/basis/pages"
+
 // numbering numbers the candidates of a symmetry sector: the words of the
 // charges whose pattern is the smallest of its orbit under the group H, in
 // ascending order. The class of the pattern has the number of the first of its
@@ -42,6 +44,7 @@ func newNumbering(s *symmetry, l *ladder) *numbering {
 	n.fillHeads(len(l.space.modes), 0, 0)
 	if s.cut <= mostTableBits && len(l.floors[n.floor]) < mostTails {
 		n.tails = make([]uint32, 1<<s.cut)
+		pages.Advise(n.tails)
 		for w := range n.tails {
 			n.tails[w] = noTail
 		}
@@ -55,7 +58,7 @@ func newNumbering(s *symmetry, l *ladder) *numbering {
 // fillHeads descends to the lower modes, in ascending order of patterns.
 func (n *numbering) fillHeads(floor int, rung int32, w uint64) {
 	if floor == n.floor {
-		class := n.patterns.class[w>>n.cut]
+		class := classOf(n.patterns.entries[w>>n.cut])
 		if uint64(n.patterns.least[class]) == w>>n.cut {
 			n.heads[class] = head{n.total, rung}
 			n.total = saturatingAdd(n.total, n.ladder.floors[floor][rung].count)
@@ -100,8 +103,8 @@ func (n *numbering) number(class uint32, low uint64) (number uint64, ok bool) {
 
 // numberOf returns the number of a word; ok is false where it is no candidate.
 func (n *numbering) numberOf(w uint64) (number uint64, ok bool) {
-	class := n.patterns.class[w>>n.cut]
-	if class == noPattern || uint64(n.patterns.least[class]) != w>>n.cut {
+	class := classOf(n.patterns.entries[w>>n.cut])
+	if class == noClass || uint64(n.patterns.least[class]) != w>>n.cut {
 		return 0, false
 	}
 	return n.number(class, w&n.low)

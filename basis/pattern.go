@@ -4,6 +4,8 @@ import (
 	"math"
 	"math/bits"
 	"slices"
+
+	"ketloom/basis/pages"
 )
 
 // A pattern is what a word has on its upper places. An element of the group
@@ -15,48 +17,52 @@ import (
 // are a sublattice there are few cosets (A. Wietek and A. M. Läuchli, Phys. Rev.
 // E 98, 033309 (2018)).
 type patterns struct {
-	class   []uint32   // by pattern: number of its orbit, ascending with the smallest pattern; noPattern where no configuration has it
-	via     []uint16   // by pattern: the element of H that carries it to the smallest of its orbit
-	least   []uint32   // by orbit: its smallest pattern
-	stab    []uint16   // by orbit: number of the stabiliser of the smallest pattern
+	entries []uint32   // by pattern: class << 16 | via
+	least   []uint32   // by class: the smallest pattern
+	stab    []uint16   // by class: number of the stabiliser of the smallest pattern
 	keeping [][]uint16 // by number: elements of H that keep a smallest pattern, without the identity; those of number 0 are none
 }
 
-const noPattern = math.MaxUint32
+// The entry of a pattern holds the number of its orbit under H, ascending with
+// the smallest pattern of the orbit, and the element of H that carries it there.
+func classOf(entry uint32) uint32 { return entry >> 16 }
+func viaOf(entry uint32) uint16   { return uint16(entry) }
+
+// noClass is the class of what no configuration has; it is above all others.
+const noClass = 1<<16 - 1
 
 // everyElement stands for a stabiliser that is not listed.
 const everyElement = math.MaxUint16
 
-// mostPatternBits bounds the upper places; the tables take 6 bytes a pattern.
-const mostPatternBits = 20
+// mostPatternBits bounds the upper places; the table takes 4 bytes a pattern.
+// mostTopBits bounds those that are folded by any group.
+const (
+	mostPatternBits = 20
+	mostTopBits     = 15
+)
 
 // newPatterns folds all patterns of the upper places of the layout, from bit
-// cut on, by the elements of H, which are given with their inverses.
+// cut on, by the elements of H, which are given with their inverses; it returns
+// nil where there are more than 65,535 classes.
 func newPatterns(l *layout, cut int, h *images, order int, inverse []int) *patterns {
-	width := l.space.bits - cut
-	p := &patterns{class: make([]uint32, 1<<width), via: make([]uint16, 1<<width)}
-	for w := range p.class {
-		p.class[w] = noPattern
+	p := &patterns{entries: make([]uint32, 1<<(l.space.bits-cut)), keeping: [][]uint16{nil}}
+	for w := range p.entries {
+		p.entries[w] = noClass << 16
 	}
+	pages.Advise(p.entries)
 	upper := upperModes(l, cut)
-	p.keeping = [][]uint16{nil}
 	number := map[string]uint16{"": 0}
-	for w := range p.class {
-		if p.class[w] != noPattern || !possible(upper, uint64(w)<<cut) {
+	for w := range p.entries {
+		if classOf(p.entries[w]) != noClass || !possible(upper, uint64(w)<<cut) {
 			continue
 		}
-		class := uint32(len(p.least))
-		var keeping []uint16
+		if len(p.least) == noClass {
+			return nil
+		}
+		keeping := p.fold(uint32(w), cut, h, order, inverse)
 		var key []byte
-		for e := range order {
-			to := h.image(e, uint64(w)<<cut) >> cut
-			if p.class[to] == noPattern {
-				p.class[to], p.via[to] = class, uint16(inverse[e])
-			}
-			if to == uint64(w) && e > 0 {
-				keeping = append(keeping, uint16(e))
-				key = append(key, byte(e), byte(e>>8))
-			}
+		for _, e := range keeping {
+			key = append(key, byte(e), byte(e>>8))
 		}
 		at, known := number[string(key)]
 		if !known && len(p.keeping) < everyElement {
@@ -66,9 +72,26 @@ func newPatterns(l *layout, cut int, h *images, order int, inverse []int) *patte
 		} else if !known {
 			at = everyElement
 		}
-		p.least, p.stab = append(p.least, uint32(w)), append(p.stab, at)
+		p.stab = append(p.stab, at)
 	}
 	return p
+}
+
+// fold makes a class of the orbit of its smallest pattern and returns the elements
+// that keep the pattern.
+func (p *patterns) fold(w uint32, cut int, h *images, order int, inverse []int) (keeping []uint16) {
+	class := uint32(len(p.least)) << 16
+	p.least = append(p.least, w)
+	for e := range order {
+		to := h.image(e, uint64(w)<<cut) >> cut
+		if classOf(p.entries[to]) == noClass {
+			p.entries[to] = class | uint32(inverse[e])
+		}
+		if to == uint64(w) && e > 0 {
+			keeping = append(keeping, uint16(e))
+		}
+	}
+	return keeping
 }
 
 func upperModes(l *layout, cut int) []Mode {
@@ -92,7 +115,7 @@ func possible(modes []Mode, w uint64) bool {
 }
 
 func (p *patterns) memory() int64 {
-	bytes := int64(len(p.class))*6 + int64(len(p.least))*6
+	bytes := int64(len(p.entries))*4 + int64(len(p.least))*6
 	for _, s := range p.keeping {
 		bytes += int64(len(s))*2 + 24
 	}
@@ -102,16 +125,16 @@ func (p *patterns) memory() int64 {
 // rearrangeFrom is the number of configurations of the charges above which
 // words are rearranged by sublattice. Below it representatives are compared
 // as they are.
-var rearrangeFrom uint64 = 1 << 22
+var rearrangeFrom uint64 = 1 << 16
 
 // upperPlaces chooses the upper places of words: a layout and the number of
 // bits below them. The choice depends on the space, the group and the number
-// of configurations only.
-func upperPlaces(space *Space, movers []*Mover, total uint64) (*layout, int) {
+// of configurations only. spare asks for places that any group can fold.
+func upperPlaces(space *Space, movers []*Mover, total uint64, spare bool) (*layout, int) {
 	plain := natural(space)
-	top := topModes(space, min((space.bits+1)/2, mostPatternBits, 4+bits.Len64(total)))
+	top := topModes(space, min((space.bits+1)/2, mostTopBits, 4+bits.Len64(total)))
 	cut := space.bits - widthOf(space, top)
-	if total <= rearrangeFrom {
+	if spare || total <= rearrangeFrom {
 		return plain, cut
 	}
 	best, least := top, 0.5*score(space, movers, top)

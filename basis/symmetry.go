@@ -57,9 +57,14 @@ func newSymmetry(space *Space, generators []group.Eigenvalue, elements []group.E
 	if space.bits < MostBits {
 		s.outside = ^uint64(0) << space.bits
 	}
-	s.words, s.cut = upperPlaces(space, movers, total)
-	s.low = 1<<s.cut - 1
-	s.split(space, elements, movers, chi)
+	for _, spare := range []bool{false, true} {
+		s.words, s.cut = upperPlaces(space, movers, total, spare)
+		s.low = 1<<s.cut - 1
+		s.split(space, elements, movers, chi)
+		if s.patterns != nil {
+			break
+		}
+	}
 	return s, nil
 }
 
@@ -98,12 +103,14 @@ func (s *symmetry) split(space *Space, elements []group.Element, movers []*Mover
 	s.exchange = newImages(s.words, s.words, s.cut, enterers, nil)
 	s.keep = newImages(s.words, s.words, s.cut, keepers, s.units)
 	s.plain = s.enter.plain() && s.keep.plain()
+	s.lows = 0
 	for _, c := range s.keep.chunks {
 		if int(c.shift) < s.cut {
 			s.lows++
 		}
 	}
 	s.shorten()
+	s.leave = nil
 	if !s.words.isNatural() {
 		s.leave = newImages(s.words, plain, s.cut, movers[:1], nil)
 	}
@@ -177,17 +184,18 @@ func (s *symmetry) smallest(c uint64) (r uint64, p path, ok bool) {
 	if c&s.outside != 0 {
 		return 0, p, false
 	}
-	class, low := uint32(noPattern), ^uint64(0)
+	class, low := uint32(noClass), ^uint64(0)
 	for j := range s.cosets {
 		w := s.enter.image(j, c)
-		k := s.patterns.class[w>>s.cut]
-		if k > class || k == noPattern {
+		e := s.patterns.entries[w>>s.cut]
+		k := classOf(e)
+		if k > class || k == noClass {
 			continue
 		}
 		if k < class {
 			class, low = k, ^uint64(0)
 		}
-		here := path{j, int(s.patterns.via[w>>s.cut]), 0}
+		here := path{j, int(viaOf(e)), 0}
 		v := s.lower(here.h, w)
 		if v < low {
 			low, p = v, here
@@ -196,7 +204,7 @@ func (s *symmetry) smallest(c uint64) (r uint64, p path, ok bool) {
 			low, p = s.smallerByStabiliser(k, v, low, here, p)
 		}
 	}
-	if class == noPattern {
+	if class == noClass {
 		return 0, p, false
 	}
 	return uint64(s.patterns.least[class])<<s.cut | low, p, true
@@ -273,14 +281,15 @@ func (s *symmetry) stabiliser(r uint64, class uint32, bases []uint64) (size int,
 	}
 	for j := 1; j < s.cosets; j++ {
 		w := bases[j] | s.exchange.part(j, s.lows, r)
-		k := s.patterns.class[w>>s.cut]
+		e := s.patterns.entries[w>>s.cut]
+		k := classOf(e)
 		if k > class {
 			continue
 		}
 		if k < class {
 			return 0, false
 		}
-		h := int(s.patterns.via[w>>s.cut])
+		h := int(viaOf(e))
 		v := s.lower(h, w)
 		if !count(v, path{j, h, 0}) || stab != 0 && !s.eachKeeping(class, func(t int) bool { return count(s.lower(t, v), path{j, h, t}) }) {
 			return 0, false

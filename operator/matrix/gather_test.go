@@ -38,7 +38,7 @@ func ring(b *testing.B, n, k int) (operator.Operator, *basis.Basis) {
 // gatherReal reads the entries of src that a product reads, in the same order,
 // with one addition each: the limit that a stored product is measured against.
 func (m *Matrix) gatherReal(dst, src []float64) {
-	m.share(func(first, last int, _ *scratch) {
+	m.share(m.plan.Rows, func(first, last int, _ *scratch) {
 		for i := first; i < last; i++ {
 			sum := 0.0
 			for _, column := range m.store.columns[m.store.start[i]:m.store.start[i+1]] {
@@ -51,7 +51,7 @@ func (m *Matrix) gatherReal(dst, src []float64) {
 
 // gatherComplex is the same for complex vectors.
 func (m *Matrix) gatherComplex(dst, src []complex128) {
-	m.share(func(first, last int, _ *scratch) {
+	m.share(m.plan.Rows, func(first, last int, _ *scratch) {
 		for i := first; i < last; i++ {
 			var re, im float64
 			for _, column := range m.store.columns[m.store.start[i]:m.store.start[i+1]] {

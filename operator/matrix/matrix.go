@@ -17,6 +17,7 @@ type Matrix struct {
 	workers int
 	store   *store // nil on the fly
 	scratch []scratch
+	product product
 }
 
 // New makes the matrix of op on a basis, ⟨i~|op|j~⟩. op need not be Hermitian.
@@ -59,12 +60,15 @@ func build(ctx context.Context, r *rows, o Options) (*Matrix, error) {
 	if plan.Form == OnTheFly {
 		return m, ctx.Err()
 	}
-	if m.store, err = fill(ctx, r, plan, o); err != nil {
+	if m.store, err = fill(ctx, r, &m.plan, o); err != nil {
 		return nil, err
 	}
-	m.plan.Elements, m.plan.Exact = int64(len(m.store.columns)+len(m.store.wide)), true
-	m.plan.Values = len(m.store.realTable) + len(m.store.table)
+	m.plan.Elements, m.plan.Exact = m.store.elements(), true
+	m.plan.Values = m.store.distinct()
 	m.plan.StoredBytes = m.store.bytes()
+	if r.weights.from != nil {
+		m.plan.StoredBytes += int64(m.plan.Columns) * numberBytes(m.plan.Real)
+	}
 	m.plan.Bytes = m.plan.StoredBytes
 	return m, nil
 }
@@ -89,13 +93,15 @@ func (m *Matrix) Plan() Plan { return m.plan }
 func (m *Matrix) Dense() []complex128 {
 	out := make([]complex128, m.plan.Rows*m.plan.Columns)
 	var s scratch
+	w := &m.rows.weights
 	for i := range m.plan.Rows {
-		elements, diagonal := m.rows.row(i, &s)
-		for _, e := range elements {
-			out[i*m.plan.Columns+e.column] = e.value
+		diagonal := m.rows.row(i, &s)
+		for n, column := range s.columns {
+			norms := w.column(column) * w.row(i)
+			out[i*m.plan.Columns+column] += complex(norms*real(s.values[n]), norms*imag(s.values[n]))
 		}
 		if m.rows.to == m.rows.from {
-			out[i*m.plan.Columns+i] = diagonal
+			out[i*m.plan.Columns+i] += diagonal
 		}
 	}
 	return out

@@ -79,7 +79,7 @@ func check(t *testing.T, what string, want [][]complex128, make func(*matrix.Opt
 				if cmplx.Abs(got-want[i][j]) > 1e-11 {
 					t.Fatalf("%s, %v: element (%d, %d) is %v, want %v", what, o.Form, i, j, got, want[i][j])
 				}
-				if dense[i*m.Columns()+j] != got {
+				if cmplx.Abs(dense[i*m.Columns()+j]-got) > 1e-14*(1+cmplx.Abs(got)) {
 					t.Fatalf("%s, %v: Dense and the product differ at (%d, %d)", what, o.Form, i, j)
 				}
 			}

@@ -10,18 +10,21 @@ import (
 // Plan says what a matrix will take before it is made.
 type Plan struct {
 	Rows, Columns int
-	// Elements is the number of elements off the diagonal; exact where Exact is
-	// set, else estimated from a sample of the rows.
+	// Elements is the number of stored elements off the diagonal; exact where
+	// Exact is set, else estimated from a sample of the rows.
 	Elements int64
 	Exact    bool
-	// Values is the number of distinct values off the diagonal that the sample
-	// (or all rows) showed, at most 65,537.
+	// Values is the number of distinct values off the diagonal, without the
+	// norms of the states, that the sample (or all rows) showed, at most 65,537.
 	Values int
 	Real   bool
 	// Bytes is what the chosen form takes; StoredBytes what the stored one does.
 	Bytes, StoredBytes int64
 	Form               Form
 	Reason             string // why this form
+
+	uniform bool // all elements off the diagonal have the same value
+	value   complex128
 }
 
 // String is one line for a person.
@@ -55,7 +58,7 @@ func newRows(op operator.Operator, from, to *basis.Basis) *rows {
 	r := &rows{to: to, from: from, phases: from.Phases()}
 	diagonal, moving := compile(op.Adjoint())
 	r.diagonal, r.moving, r.kernels = diagonal, bundled(moving), len(diagonal)+len(moving)
-	r.unfold = to.GroupOrder() == 1 && from.GroupOrder() > 1
+	r.weights = newWeights(to, from)
 	return r
 }
 
@@ -75,30 +78,66 @@ func (r *rows) isReal() bool {
 func (r *rows) plan(o Options) (Plan, error) {
 	n := r.to.Len()
 	p := Plan{Rows: n, Columns: r.from.Len(), Real: r.isReal(), Exact: n <= sampleRows}
-	count := min(n, sampleRows)
-	distinct := map[complex128]bool{}
-	var s scratch
-	var found int64
-	for k := range count {
-		elements, _ := r.row(int(int64(k)*int64(n)/int64(count)), &s)
-		found += int64(len(elements))
-		for _, e := range elements {
-			if len(distinct) <= mostCodes {
-				distinct[e.value] = true
-			}
-		}
-	}
-	p.Elements = found
-	if !p.Exact {
-		p.Elements = int64(float64(found) / float64(count) * float64(n))
-	}
-	p.Values = len(distinct)
+	p.sample(r, min(n, sampleRows))
 	p.StoredBytes = p.Elements*elementBytes(p) + int64(n)*(8+numberBytes(p.Real)) + int64(p.Values)*numberBytes(p.Real)
 	p.choose(o, int64(r.kernels)*48)
+	if r.weights.from != nil { // the weighted source
+		p.StoredBytes += int64(p.Columns) * numberBytes(p.Real)
+		p.Bytes += int64(p.Columns) * numberBytes(p.Real)
+	}
 	if o.Form == Stored && p.StoredBytes > o.Memory {
 		return p, fmt.Errorf("matrix: the stored form needs %d MiB, more than the limit of %d MiB; raise Options.Memory or leave the form to Auto", p.StoredBytes>>20, o.Memory>>20)
 	}
 	return p, nil
+}
+
+// mergeBelow is the part of the elements that must remain after merging for
+// it to be worth its sorting.
+const mergeBelow = 0.9
+
+// sample computes some rows, unmerged and merged, and chooses between the two.
+func (p *Plan) sample(r *rows, count int) {
+	raw, merged := newTally(), newTally()
+	var s scratch
+	for k := range count {
+		i := int(int64(k) * int64(p.Rows) / int64(count))
+		r.merge = false
+		r.row(i, &s)
+		raw.add(s.values)
+		r.merge = true
+		r.row(i, &s)
+		merged.add(s.values)
+	}
+	best := raw
+	if r.merge = float64(merged.elements) < mergeBelow*float64(raw.elements); r.merge {
+		best = merged
+	}
+	p.Values, p.Elements = len(best.distinct), best.elements
+	if p.uniform = p.Values == 1; p.uniform {
+		for v := range best.distinct {
+			p.value = v
+		}
+	}
+	if !p.Exact {
+		p.Elements = int64(float64(best.elements) / float64(count) * float64(p.Rows))
+	}
+}
+
+// tally counts elements and their distinct values.
+type tally struct {
+	elements int64
+	distinct map[complex128]bool
+}
+
+func newTally() *tally { return &tally{distinct: map[complex128]bool{}} }
+
+func (t *tally) add(values []complex128) {
+	t.elements += int64(len(values))
+	for _, v := range values {
+		if len(t.distinct) <= mostCodes {
+			t.distinct[v] = true
+		}
+	}
 }
 
 func (p *Plan) choose(o Options, terms int64) {
@@ -123,7 +162,9 @@ func elementBytes(p Plan) int64 {
 		column = 8
 	}
 	switch {
-	case p.Values <= 1<<8:
+	case p.uniform:
+		return column
+	case p.Values <= mostNarrow:
 		return column + 1
 	case p.Values <= mostCodes:
 		return column + 2

@@ -3,7 +3,15 @@ package matrix
 import (
 	"sync"
 	"sync/atomic"
+
+	"ketloom/basis/pages"
 )
+
+// product is the working memory of products: the source with its weights.
+type product struct {
+	real    []float64
+	complex []complex128
+}
 
 // Apply computes dst = M src for a real matrix: len(dst) = Rows(), len(src) =
 // Columns(), no overlap. dst is overwritten. A complex matrix or a wrong length
@@ -15,13 +23,47 @@ func (m *Matrix) Apply(dst, src []float64) {
 	if len(dst) != m.plan.Rows || len(src) != m.plan.Columns {
 		panic("matrix: vector length does not match the matrix")
 	}
-	m.share(func(first, last int, s *scratch) {
+	weighted := m.weighted(src)
+	m.share(m.plan.Rows, func(first, last int, s *scratch) {
 		if m.store == nil {
-			m.rows.applyReal(dst, src, first, last, s)
+			m.applyReal(dst, weighted, src, first, last, s)
 			return
 		}
-		m.store.applyReal(dst, src, first, last)
+		m.store.sumReal(dst, weighted, first, last)
+		m.finish(dst, src, first, last)
 	})
+}
+
+// weighted returns the source with the weights of its norms.
+func (m *Matrix) weighted(src []float64) []float64 {
+	w := &m.rows.weights
+	if w.from == nil {
+		return src
+	}
+	if m.product.real == nil {
+		m.product.real = pages.Floats(m.plan.Columns)
+	}
+	dst := m.product.real
+	m.share(m.plan.Columns, func(first, last int, _ *scratch) {
+		for j := first; j < last; j++ {
+			dst[j] = w.column(j) * src[j]
+		}
+	})
+	return dst
+}
+
+// finish weights the sums of the rows and adds the diagonal.
+func (m *Matrix) finish(dst, src []float64, first, last int) {
+	if w := &m.rows.weights; w.to != nil {
+		for i := first; i < last; i++ {
+			dst[i] *= w.row(i)
+		}
+	}
+	if d := m.store.realDiagonal; d != nil {
+		for i := first; i < last; i++ {
+			dst[i] += d[i] * src[i]
+		}
+	}
 }
 
 // ApplyComplex computes dst = M src for any matrix, as Apply does.
@@ -29,27 +71,66 @@ func (m *Matrix) ApplyComplex(dst, src []complex128) {
 	if len(dst) != m.plan.Rows || len(src) != m.plan.Columns {
 		panic("matrix: vector length does not match the matrix")
 	}
-	m.share(func(first, last int, s *scratch) {
-		switch {
-		case m.store == nil:
-			m.rows.applyComplex(dst, src, first, last, s)
-		case m.store.real:
-			m.store.applyRealToComplex(dst, src, first, last)
-		default:
-			m.store.applyComplex(dst, src, first, last)
+	weighted := m.weightedComplex(src)
+	m.share(m.plan.Rows, func(first, last int, s *scratch) {
+		if m.store == nil {
+			m.applyComplex(dst, weighted, src, first, last, s)
+			return
 		}
+		if m.store.real {
+			m.store.sumRealOfComplex(dst, weighted, first, last)
+		} else {
+			m.store.sumComplex(dst, weighted, first, last)
+		}
+		m.finishComplex(dst, src, first, last)
 	})
 }
 
-// share calls work with blocks of rows from Workers goroutines until all are
+func (m *Matrix) weightedComplex(src []complex128) []complex128 {
+	w := &m.rows.weights
+	if w.from == nil {
+		return src
+	}
+	if m.product.complex == nil {
+		m.product.complex = pages.Complexes(m.plan.Columns)
+	}
+	dst := m.product.complex
+	m.share(m.plan.Columns, func(first, last int, _ *scratch) {
+		for j := first; j < last; j++ {
+			f := w.column(j)
+			dst[j] = complex(f*real(src[j]), f*imag(src[j]))
+		}
+	})
+	return dst
+}
+
+func (m *Matrix) finishComplex(dst, src []complex128, first, last int) {
+	if w := &m.rows.weights; w.to != nil {
+		for i := first; i < last; i++ {
+			f := w.row(i)
+			dst[i] = complex(f*real(dst[i]), f*imag(dst[i]))
+		}
+	}
+	for i := first; i < last; i++ {
+		switch {
+		case m.store.realDiagonal != nil:
+			d := m.store.realDiagonal[i]
+			dst[i] += complex(d*real(src[i]), d*imag(src[i]))
+		case m.store.diagonal != nil:
+			dst[i] += times(m.store.diagonal[i], src[i])
+		}
+	}
+}
+
+// share calls work with blocks of 0 … n-1 from Workers goroutines until all are
 // done. Each row is computed by one goroutine in a fixed order, so that the
 // result does not depend on the number of goroutines.
-func (m *Matrix) share(work func(first, last int, s *scratch)) {
-	blocks := (m.plan.Rows + blockRows - 1) / blockRows
+func (m *Matrix) share(n int, work func(first, last int, s *scratch)) {
+	blocks := (n + blockRows - 1) / blockRows
 	workers := min(m.workers, blocks)
 	if workers <= 1 {
 		for b := range blocks {
-			work(b*blockRows, min((b+1)*blockRows, m.plan.Rows), &m.scratch[0])
+			work(b*blockRows, min((b+1)*blockRows, n), &m.scratch[0])
 		}
 		return
 	}
@@ -64,38 +145,62 @@ func (m *Matrix) share(work func(first, last int, s *scratch)) {
 				if b >= blocks {
 					return
 				}
-				work(b*blockRows, min((b+1)*blockRows, m.plan.Rows), s)
+				work(b*blockRows, min((b+1)*blockRows, n), s)
 			}
 		}(&m.scratch[w])
 	}
 	wg.Wait()
 }
 
-func (r *rows) applyReal(dst, src []float64, first, last int, s *scratch) {
+// applyReal computes rows on the fly, with the same sums as a store.
+func (m *Matrix) applyReal(dst, weighted, src []float64, first, last int, s *scratch) {
 	for i := first; i < last; i++ {
-		elements, diagonal := r.row(i, s)
-		sum := 0.0
-		if r.to == r.from {
-			sum = real(diagonal) * src[i]
+		diagonal := real(m.rows.row(i, s))
+		a, b := 0.0, 0.0
+		for n, column := range s.columns {
+			x := weighted[column]
+			if !m.plan.uniform {
+				x *= real(s.values[n])
+			}
+			if n%2 == 0 {
+				a += x
+			} else {
+				b += x
+			}
 		}
-		for _, e := range elements {
-			sum += real(e.value) * src[e.column]
+		sum := a + b
+		if m.plan.uniform {
+			sum *= real(m.plan.value)
 		}
 		dst[i] = sum
+		if m.rows.weights.to != nil {
+			dst[i] *= m.rows.weights.row(i)
+		}
+		if m.rows.to == m.rows.from {
+			dst[i] += diagonal * src[i]
+		}
 	}
 }
 
-func (r *rows) applyComplex(dst, src []complex128, first, last int, s *scratch) {
+func (m *Matrix) applyComplex(dst, weighted, src []complex128, first, last int, s *scratch) {
 	for i := first; i < last; i++ {
-		elements, diagonal := r.row(i, s)
-		var sum complex128
-		if r.to == r.from {
-			sum = times(diagonal, src[i])
+		diagonal := m.rows.row(i, s)
+		var re, im, re2, im2 float64
+		for n, column := range s.columns {
+			v, x := s.values[n], weighted[column]
+			re += real(v) * real(x)
+			re2 += imag(v) * imag(x)
+			im += real(v) * imag(x)
+			im2 += imag(v) * real(x)
 		}
-		for _, e := range elements {
-			sum += times(e.value, src[e.column])
+		dst[i] = complex(re-re2, im+im2)
+		if m.rows.weights.to != nil {
+			f := m.rows.weights.row(i)
+			dst[i] = complex(f*real(dst[i]), f*imag(dst[i]))
 		}
-		dst[i] = sum
+		if m.rows.to == m.rows.from {
+			dst[i] += times(diagonal, src[i])
+		}
 	}
 }
 
@@ -103,115 +208,4 @@ func (r *rows) applyComplex(dst, src []complex128, first, last int, s *scratch) 
 // numbers takes.
 func times(a, b complex128) complex128 {
 	return complex(real(a)*real(b)-imag(a)*imag(b), real(a)*imag(b)+imag(a)*real(b))
-}
-
-// value returns element n of the store.
-func (s *store) value(n int64) complex128 {
-	switch {
-	case s.real && s.narrow != nil:
-		return complex(s.realTable[s.narrow[n]], 0)
-	case s.real && s.codes != nil:
-		return complex(s.realTable[s.codes[n]], 0)
-	case s.real:
-		return complex(s.realValues[n], 0)
-	case s.narrow != nil:
-		return s.table[s.narrow[n]]
-	case s.codes != nil:
-		return s.table[s.codes[n]]
-	}
-	return s.values[n]
-}
-
-func (s *store) applyReal(dst, src []float64, first, last int) {
-	for i := first; i < last; i++ {
-		from, to := s.start[i], s.start[i+1]
-		sum := 0.0
-		if s.realDiagonal != nil {
-			sum = s.realDiagonal[i] * src[i]
-		}
-		switch {
-		case s.wide != nil:
-			for n := from; n < to; n++ {
-				sum += real(s.value(n)) * src[s.wide[n]]
-			}
-		case s.narrow != nil:
-			codes := s.narrow[from:to]
-			for n, column := range s.columns[from:to] {
-				sum += s.realTable[codes[n]] * src[column]
-			}
-		case s.codes != nil:
-			codes := s.codes[from:to]
-			for n, column := range s.columns[from:to] {
-				sum += s.realTable[codes[n]] * src[column]
-			}
-		default:
-			values := s.realValues[from:to]
-			for n, column := range s.columns[from:to] {
-				sum += values[n] * src[column]
-			}
-		}
-		dst[i] = sum
-	}
-}
-
-func (s *store) applyRealToComplex(dst, src []complex128, first, last int) {
-	for i := first; i < last; i++ {
-		var re, im float64
-		if s.realDiagonal != nil {
-			re, im = s.realDiagonal[i]*real(src[i]), s.realDiagonal[i]*imag(src[i])
-		}
-		for n := s.start[i]; n < s.start[i+1]; n++ {
-			v, x := real(s.value(n)), src[s.column(n)]
-			re += v * real(x)
-			im += v * imag(x)
-		}
-		dst[i] = complex(re, im)
-	}
-}
-
-func (s *store) column(n int64) uint64 {
-	if s.wide != nil {
-		return s.wide[n]
-	}
-	return uint64(s.columns[n])
-}
-
-func (s *store) applyComplex(dst, src []complex128, first, last int) {
-	for i := first; i < last; i++ {
-		from, to := s.start[i], s.start[i+1]
-		var re, im float64
-		if s.diagonal != nil {
-			d := times(s.diagonal[i], src[i])
-			re, im = real(d), imag(d)
-		}
-		switch {
-		case s.wide != nil:
-			for n := from; n < to; n++ {
-				p := times(s.value(n), src[s.wide[n]])
-				re, im = re+real(p), im+imag(p)
-			}
-		case s.narrow != nil:
-			codes := s.narrow[from:to]
-			for n, column := range s.columns[from:to] {
-				v, x := s.table[codes[n]], src[column]
-				re += real(v)*real(x) - imag(v)*imag(x)
-				im += real(v)*imag(x) + imag(v)*real(x)
-			}
-		case s.codes != nil:
-			codes := s.codes[from:to]
-			for n, column := range s.columns[from:to] {
-				v, x := s.table[codes[n]], src[column]
-				re += real(v)*real(x) - imag(v)*imag(x)
-				im += real(v)*imag(x) + imag(v)*real(x)
-			}
-		default:
-			values := s.values[from:to]
-			for n, column := range s.columns[from:to] {
-				v, x := values[n], src[column]
-				re += real(v)*real(x) - imag(v)*imag(x)
-				im += real(v)*imag(x) + imag(v)*real(x)
-			}
-		}
-		dst[i] = complex(re, im)
-	}
 }

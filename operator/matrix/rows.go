@@ -1,7 +1,6 @@
 package matrix
 
 import (
-	"math"
 	"slices"
 
 	"ketloom/basis"
@@ -13,51 +12,65 @@ import (
 //
 // so that row i is what O† makes of state i of the target basis, expressed in
 // the source basis. For an O that carries the source sector into the target
-// sector it is (amplitude · χ(h)*ε)* (N_j/N_i)^½.
+// sector it is (amplitude · χ(h)*ε)* (N_j/N_i)^½. The norms are left to the
+// vectors (see weights): what a row holds is (amplitude · χ(h)*ε)*.
 type rows struct {
 	to, from *basis.Basis
 	diagonal []kernel // of O†, those that leave a configuration as it is
 	moving   []bundle // of O†, the others
 	kernels  int
 	phases   []complex128
-	unfold   bool // target without symmetry, source with one
+	weights  weights
+	merge    bool // elements of the same column are added up; set by the plan
 }
 
-// element is a matrix element in a row.
-type element struct {
-	column int
-	value  complex128
-}
-
-// scratch is the working memory of one goroutine.
+// scratch is the working memory of one goroutine, and the row that it computed.
 type scratch struct {
-	made   []element // as the kernels make them
-	order  []uint64  // column and place of each, to be sorted
-	merged []element
+	columns []int
+	values  []complex128 // without the norms
+
+	batch basis.Batch
+	made  []complex128 // amplitude of each configuration of the batch
+	order []uint64     // column and place of each, to be sorted
 }
 
 // placeBits are the bits of an order key that hold the place in the row, the
 // bits above hold the column.
 const placeBits = 24
 
-// row returns the elements of row i in ascending column order, each column
-// once, with the diagonal apart where both bases are the same. The slice is
-// valid until the next call with the same scratch.
-func (r *rows) row(i int, s *scratch) (elements []element, diagonal complex128) {
+// row puts the elements of row i off the diagonal into the scratch: as the terms
+// make them, or merged, that is, in ascending column order and each column once.
+// It returns the diagonal where both bases are the same; unmerged, the
+// diagonal element may have further parts among the others.
+func (r *rows) row(i int, s *scratch) (diagonal complex128) {
+	diagonal = r.raw(i, s)
+	s.columns, s.values = s.columns[:0], s.values[:0]
+	if r.merge {
+		return diagonal + s.merge(i, r.to == r.from)
+	}
+	for n, column := range s.batch.States {
+		if column >= 0 {
+			s.columns, s.values = append(s.columns, column), append(s.values, s.made[n])
+		}
+	}
+	return diagonal
+}
+
+// raw fills the scratch with the elements of row i as the kernels make them:
+// places in batch.States (-1 for none), amplitudes in made. It returns what
+// leaves the configuration as it is, where both bases are the same.
+func (r *rows) raw(i int, s *scratch) (diagonal complex128) {
 	c := uint64(r.to.At(i))
-	s.made = s.made[:0]
+	list, made := s.batch.Configurations[:0], s.made[:0]
 	var here complex128
 	for k := range r.diagonal {
 		if d := &r.diagonal[k]; c&d.mask == d.value {
 			here += d.amplitude(c)
 		}
 	}
-	switch {
-	case here == 0:
-	case r.to == r.from:
-		s.made = append(s.made, element{i, complex(real(here), -imag(here))})
-	default:
-		r.add(s, i, c, here)
+	if here != 0 && r.to != r.from {
+		list, made = append(list, basis.Configuration(c)), append(made, here)
+		here = 0
 	}
 	for k := range r.moving {
 		b := &r.moving[k]
@@ -66,54 +79,45 @@ func (r *rows) row(i int, s *scratch) (elements []element, diagonal complex128) 
 		}
 		for n := range b.kernels {
 			if m := &b.kernels[n]; c&m.mask == m.value {
-				r.add(s, i, c^m.flip, m.amplitude(c))
+				list, made = append(list, basis.Configuration(c^m.flip)), append(made, m.amplitude(c))
 			}
 		}
 	}
-	s.merge()
-	if r.to != r.from {
-		return s.merged, 0
+	s.batch.Configurations, s.made = list, made
+	r.from.LocateAll(&s.batch)
+	trivial := len(r.phases) == 1
+	for n, amplitude := range made {
+		if !trivial {
+			amplitude = times(amplitude, r.phases[s.batch.Phases[n]])
+		}
+		made[n] = complex(real(amplitude), -imag(amplitude))
 	}
-	if at, ok := slices.BinarySearchFunc(s.merged, i, func(e element, i int) int { return e.column - i }); ok {
-		diagonal = s.merged[at].value
-		s.merged = slices.Delete(s.merged, at, at+1)
-	}
-	return s.merged, diagonal
-}
-
-// add puts the amplitude of O† on c into the row.
-func (r *rows) add(s *scratch, i int, c uint64, amplitude complex128) {
-	j, phase, ok := r.from.Locate(basis.Configuration(c))
-	if !ok {
-		return
-	}
-	value := amplitude * r.phases[phase]
-	a, b := r.from.Stabiliser(j), r.to.Stabiliser(i)
-	switch {
-	case r.unfold: // ⟨j~|c⟩ of an orbit with |G|/|G_j| members
-		value *= complex(math.Sqrt(float64(a)/float64(r.from.GroupOrder())), 0)
-	case a != b:
-		value *= complex(math.Sqrt(float64(a)/float64(b)), 0)
-	}
-	s.made = append(s.made, element{j, complex(real(value), -imag(value))})
+	return complex(real(here), -imag(here))
 }
 
 // merge sorts the elements by column and adds up those of the same column, in
-// the order in which they were made. Zeros are dropped.
-func (s *scratch) merge() {
+// the order in which they were made. Zeros are dropped. What falls on the
+// diagonal of a square matrix is returned instead.
+func (s *scratch) merge(i int, square bool) (diagonal complex128) {
 	s.order = s.order[:0]
-	for place, e := range s.made {
-		s.order = append(s.order, uint64(e.column)<<placeBits|uint64(place))
+	for place, column := range s.batch.States {
+		if column >= 0 {
+			s.order = append(s.order, uint64(column)<<placeBits|uint64(place))
+		}
 	}
 	slices.Sort(s.order)
-	s.merged = s.merged[:0]
-	for _, key := range s.order {
-		e := s.made[key&(1<<placeBits-1)]
-		if n := len(s.merged); n > 0 && s.merged[n-1].column == e.column {
-			s.merged[n-1].value += e.value
-			continue
+	for n := 0; n < len(s.order); {
+		column, value := int(s.order[n]>>placeBits), complex128(0)
+		for ; n < len(s.order) && int(s.order[n]>>placeBits) == column; n++ {
+			value += s.made[s.order[n]&(1<<placeBits-1)]
 		}
-		s.merged = append(s.merged, e)
+		switch {
+		case value == 0:
+		case square && column == i:
+			diagonal = value
+		default:
+			s.columns, s.values = append(s.columns, column), append(s.values, value)
+		}
 	}
-	s.merged = slices.DeleteFunc(s.merged, func(e element) bool { return e.value == 0 })
+	return diagonal
 }
