@@ -299,31 +299,39 @@ func TestTorusSectorsWithParticleNumber(t *testing.T) {
 	}
 }
 
+// randomSymmetry returns up to four sites of one kind and a permutation of them with
+// any relabelling and phases of quarter turns.
+func randomSymmetry(r *rand.Rand) (*Space, group.Action) {
+	kinds := []Site{SpinHalf(), Spin(2), HardCoreBoson(), Fermion(), Electron()}
+	electron := [][]int{{0, 1, 2, 3}, {0, 2, 1, 3}, {1, 0, 3, 2}, {3, 2, 1, 0}, {2, 3, 0, 1}, {3, 1, 2, 0}, {1, 3, 0, 2}, {2, 0, 3, 1}}
+	site := kinds[r.IntN(len(kinds))]
+	n := 1 + r.IntN(4)
+	s, _ := Uniform(n, site)
+	a := group.Action{Sites: r.Perm(n), Levels: make([][]int, n), Phases: make([][]group.Turn, n)}
+	for i := range n {
+		if site.Kind == KindElectron {
+			a.Levels[i] = electron[r.IntN(8)]
+			up, down, empty := group.NewTurn(r.Int64N(4), 4), group.NewTurn(r.Int64N(4), 4), group.NewTurn(r.Int64N(4), 4)
+			a.Phases[i] = []group.Turn{empty, empty.Add(up), empty.Add(down), empty.Add(up).Add(down)}
+			continue
+		}
+		a.Levels[i] = r.Perm(site.Levels)
+		a.Phases[i] = make([]group.Turn, site.Levels)
+		for level := range a.Phases[i] {
+			a.Phases[i][level] = group.NewTurn(r.Int64N(4), 4)
+		}
+	}
+	return s, a
+}
+
 // Random cyclic symmetries with relabellings, phases, spin exchange and
 // particle-hole exchange: the sectors of all eigenvalues add up.
 func TestRandomMonomialSymmetries(t *testing.T) {
 	r := rand.New(rand.NewPCG(7, 7))
-	kinds := []Site{SpinHalf(), Spin(2), HardCoreBoson(), Fermion(), Electron()}
-	electron := [][]int{{0, 1, 2, 3}, {0, 2, 1, 3}, {1, 0, 3, 2}, {3, 2, 1, 0}, {2, 3, 0, 1}, {3, 1, 2, 0}, {1, 3, 0, 2}, {2, 0, 3, 1}}
 	signs := 0
 	for range 80 {
-		site := kinds[r.IntN(len(kinds))]
-		n := 1 + r.IntN(4)
-		s, _ := Uniform(n, site)
-		a := group.Action{Sites: r.Perm(n), Levels: make([][]int, n), Phases: make([][]group.Turn, n)}
-		for i := range n {
-			if site.Kind == KindElectron {
-				a.Levels[i] = electron[r.IntN(8)]
-				up, down, empty := group.NewTurn(r.Int64N(4), 4), group.NewTurn(r.Int64N(4), 4), group.NewTurn(r.Int64N(4), 4)
-				a.Phases[i] = []group.Turn{empty, empty.Add(up), empty.Add(down), empty.Add(up).Add(down)}
-				continue
-			}
-			a.Levels[i] = r.Perm(site.Levels)
-			a.Phases[i] = make([]group.Turn, site.Levels)
-			for level := range a.Phases[i] {
-				a.Phases[i][level] = group.NewTurn(r.Int64N(4), 4)
-			}
-		}
+		s, a := randomSymmetry(r)
+		site := s.Site(0)
 		order, err := a.Order()
 		if err != nil {
 			t.Fatal(err)

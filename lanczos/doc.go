@@ -37,6 +37,6 @@
 // C. Lanczos, J. Res. Natl. Bur. Stand. 45, 255 (1950); further ones at the
 // functions and types that use them.
 //
-// This package imports lanczos/dense and nothing else of the module; lanczostest
+// This package imports lanczos/dense and basis/pages, which speaks of memory only; lanczostest
 // checks operators for it.
 package lanczos

@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"math"
 	"slices"
+
+	"ketloom/basis/pages"
 )
 
 const (
@@ -57,6 +59,7 @@ func newSearch[T scalar](ctx context.Context, op Operator, s settings, f field[T
 	r.basis = make([][]T, s.Krylov+1)
 	for i := range r.basis {
 		r.basis[i] = make([]T, s.dim)
+		pages.Advise(r.basis[i])
 	}
 	r.matrix = newProjected(s.Krylov)
 	r.turn = make([]T, s.Krylov*s.Krylov)
@@ -307,6 +310,7 @@ func (s *search[T]) setAside(count int) {
 	fresh := make([][]T, count)
 	for c := range fresh {
 		fresh[c] = make([]T, s.dim)
+		pages.Advise(fresh[c])
 	}
 	s.rotateBasis(fresh)
 	for c, v := range fresh {

@@ -14,7 +14,7 @@ import (
 
 // symmetric36 is the sector of all symmetries of the 6×6 square lattice at S_z = 0,
 // even under spin inversion: 576 elements.
-func symmetric36(b *testing.B) (*basis.Space, basis.Sector) {
+func symmetric36(b testing.TB) (*basis.Space, basis.Sector) {
 	b.Helper()
 	c, err := lattice.Torus(lattice.Square(), 6, 6)
 	if err != nil {
@@ -83,4 +83,27 @@ func locating(made *basis.Basis, list []basis.Configuration) float64 {
 		}
 	}
 	return float64(time.Since(begun).Nanoseconds()) / float64(rounds*len(list))
+}
+
+// The 6×6 square lattice at S_z = 0: dimensions by Burnside's formula over all 288
+// elements of the space group and 576 with spin inversion. Values: an independent
+// program that enumerates the orbits.
+func TestDimensionsOf36Spins(t *testing.T) {
+	space, sector := symmetric36(t)
+	all := sector.Symmetries
+	for _, c := range []struct {
+		name       string
+		symmetries []group.Eigenvalue
+		want       int64
+	}{
+		{"translations", all[:2], 252091362},
+		{"space group", all[:4], 31566122},
+		{"even under spin inversion", all, 15804956},
+		{"odd under spin inversion", append(all[:4:4], group.Eigenvalue{Generator: all[4].Generator, Turn: group.NewTurn(1, 2)}), 15761166},
+	} {
+		got, err := basis.Dimension(space, basis.Sector{Charges: sector.Charges, Symmetries: c.symmetries})
+		if err != nil || got != c.want {
+			t.Errorf("%s: %d states (%v), want %d", c.name, got, err, c.want)
+		}
+	}
 }
