@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"math/big"
+	"math/bits"
 	"math/rand/v2"
 	"strings"
 	"testing"
@@ -223,6 +224,13 @@ func TestOrdersOfGraphs(t *testing.T) {
 		// Paley, strongly regular: x -> a x + b with a square: p(p-1)/2
 		"Paley 29": {where(29, func(i, j int) bool { return square(j-i, 29) }), number(29 * 14), 1},
 		"Paley 61": {where(61, func(i, j int) bool { return square(j-i, 61) }), number(61 * 30), 1},
+		// Latin square graph of the cyclic group: 7² translations, 6 multipliers, 6 exchanges of rows, columns, symbols
+		"Latin square of 7": {where(49, func(i, j int) bool {
+			return i/7 == j/7 || i%7 == j%7 || (i/7+i%7-j/7-j%7)%7 == 0
+		}), number(49 * 36), 1},
+		// strongly regular graphs of one set of parameters side by side
+		"boards and Shrikhande": {boards(), product(times2(power(number(192), 2)), times2(power(number(1152), 2))), 2},
+		"crown":                 {where(64, func(i, j int) bool { return i < 32 && j >= 32 && j-32 != i }), times2(factorial(32)), 1},
 		// the same number of neighbours everywhere, two orbits
 		"ring of 3 and of 4": {where(7, func(i, j int) bool {
 			return j < 3 || i >= 3 && (j-i == 1 || j-i == 3)
@@ -235,10 +243,21 @@ func TestOrdersOfGraphs(t *testing.T) {
 		if len(s.Orbits) != c.orbits {
 			t.Errorf("%s: orbits %v; want %d", name, s.Orbits, c.orbits)
 		}
-		if len(s.Generators) > 1+c.g.n/2+1 {
-			t.Errorf("%s: %d generators", name, len(s.Generators))
+		if len(s.Generators) > 8 || s.Nodes > 1000 {
+			t.Errorf("%s: %d generators, %d nodes", name, len(s.Generators), s.Nodes)
 		}
 	}
+}
+
+// boards is two Shrikhande graphs and two boards of 4.
+func boards() graph {
+	all := shrikhande().copies(2)
+	board := where(16, func(i, j int) bool { return i/4 == j/4 || i%4 == j%4 })
+	for _, b := range board.copies(2).bonds {
+		all.bonds = append(all.bonds, [2]int{b[0] + 32, b[1] + 32})
+	}
+	all.n = 64
+	return all
 }
 
 func shrikhande() graph {
@@ -476,8 +495,8 @@ func TestSymmetriesAgainstBruteForce(t *testing.T) {
 func TestFewWeightsAgainstBruteForce(t *testing.T) {
 	r := rand.New(rand.NewPCG(8, 8))
 	orders := map[int]int{}
-	for k := range 60 {
-		n := 4 + k%20/19 + k%3/2 // up to six
+	for k := range 36 {
+		n := 4 + k%18/17 + k%4/3 // up to six
 		spins, fermions, electrons := operator.On(uniform(t, n, basis.SpinHalf())), operator.On(uniform(t, n, basis.Fermion())), operator.On(uniform(t, n, basis.Electron()))
 		a, b, c := spins.Zero(), fermions.Zero(), electrons.Zero()
 		for range 1 + r.IntN(2*n) {
@@ -519,6 +538,77 @@ func TestPairsOfFermionsAroundARing(t *testing.T) {
 		}
 		if s := symmetries(t, h); s.Elements() != int64(n) || s.Inverting {
 			t.Errorf("%d sites: %v", n, s)
+		}
+	}
+}
+
+// Long products of creators, whose sign the search sees only as sites are
+// settled: with random signs nothing remains, and one orbit under a random
+// permutation brings that back.
+func TestSignsOfLongProducts(t *testing.T) {
+	r := rand.New(rand.NewPCG(10, 10))
+	long := func(n int) operator.Operator {
+		o := operator.On(uniform(t, n, basis.Fermion()))
+		var list []operator.Operator
+		for set := range 1 << n {
+			if bits.OnesCount(uint(set)) != 5 {
+				continue
+			}
+			p := o.One().Scale(complex(float64(1-2*r.IntN(2)), 0))
+			for i := range n {
+				if set>>i&1 == 1 {
+					p = p.Times(o.Create(i))
+				}
+			}
+			list = append(list, p)
+		}
+		return operator.Sum(list)
+	}
+	if s := symmetries(t, long(9)); s.Elements() != 1 {
+		t.Error(s)
+	}
+	for range 4 {
+		agreesWithBruteForce(t, "long products", spread(r, long(6)))
+	}
+	const n = 9
+	o := operator.On(uniform(t, n, basis.Fermion()))
+	even, odd := o.Zero(), o.Zero() // reversing a product of five is an even permutation, of six an odd one
+	for k := range n {
+		p := o.One()
+		for x := range 5 {
+			p = p.Times(o.Create((k + x) % n))
+		}
+		even, odd = even.Plus(p), odd.Plus(p.Times(o.Create((k+5)%n)))
+	}
+	if s := symmetries(t, even); s.Elements() != 2*n {
+		t.Error(s)
+	}
+	if s := symmetries(t, odd); s.Elements() != n {
+		t.Error(s)
+	}
+}
+
+// Pairs between all sites, directed by the squares modulo p, are a tournament:
+// x -> a x + b with a square, p(p-1)/2 symmetries (closed formula).
+func TestPairsOfATournament(t *testing.T) {
+	for _, p := range []int{7, 23, 43} {
+		o := operator.On(uniform(t, p, basis.Fermion()))
+		h := o.Zero()
+		for j := range p {
+			for i := range j {
+				sign := complex128(-1)
+				if square(j-i, p) {
+					sign = 1
+				}
+				pair := o.Create(i).Times(o.Create(j)).Scale(sign)
+				h = operator.Sum([]operator.Operator{h, pair, pair.Adjoint()})
+			}
+		}
+		if s := symmetries(t, h); s.Elements() != int64(p*(p-1)/2) {
+			t.Errorf("%d: %v", p, s)
+		}
+		if p == 7 {
+			agreesWithBruteForce(t, "one pair inverted", h.Plus(o.Create(0).Times(o.Create(1)).Scale(-2)))
 		}
 	}
 }
@@ -708,7 +798,7 @@ func TestSectorFromFoundSymmetries(t *testing.T) {
 func TestSearchThatIsStopped(t *testing.T) {
 	h := ring(12).heisenberg(t)
 	whole := symmetries(t, h)
-	seen := map[string]bool{}
+	seen, inversions := map[string]bool{}, 0
 	for nodes := int64(1); nodes < whole.Nodes; nodes++ {
 		s, err := h.FindSymmetries(context.Background(), &operator.FindOptions{Nodes: nodes})
 		if !errors.Is(err, operator.ErrSearchLimit) || s.Complete {
@@ -721,9 +811,12 @@ func TestSearchThatIsStopped(t *testing.T) {
 			t.Fatalf("%d nodes: %d elements, %v", nodes, len(elements), s)
 		}
 		seen[s.Order().String()] = true
+		if s.Inversion {
+			inversions++
+		}
 	}
-	if len(seen) < 2 {
-		t.Fatalf("orders %v", seen)
+	if len(seen) < 2 || inversions == 0 {
+		t.Fatalf("orders %v, %d with the inversion alone, which needs no search", seen, inversions)
 	}
 	ctx, cancel := context.WithCancel(context.Background())
 	cancel()

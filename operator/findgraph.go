@@ -9,6 +9,7 @@ import (
 type hypergraph struct {
 	colours []uint64 // of the sites: their kind
 	edges   []edge
+	untold  []int // terms whose sign the edges do not tell
 }
 
 // edge joins some sites in given roles.
@@ -31,8 +32,8 @@ const mostArrangements = 36
 // its coefficient means something only together with their order. Such a term
 // becomes one edge for each order in which the coefficient has the smaller
 // colour of the two that it takes, the roles saying who is first; c†_i c†_j is
-// an arrow. With more orders than mostArrangements the order is not told, and
-// only the final comparison of terms sees it.
+// an arrow. With more orders than mostArrangements the edge does not tell the
+// sign, and the search compares such a term once its sites are settled.
 func graphOf(c *colouredTerms) *hypergraph {
 	g := &hypergraph{colours: make([]uint64, c.space.Sites())}
 	for i := range g.colours {
@@ -48,6 +49,7 @@ func graphOf(c *colouredTerms) *hypergraph {
 		roles := make([]uint64, len(t.Factors))
 		if arrangements(groups) > mostArrangements {
 			g.add(c.space, uint64(smaller)<<1|1, t.Factors, roles)
+			g.untold = append(g.untold, i)
 			continue
 		}
 		if len(groups) == 0 {

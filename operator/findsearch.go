@@ -176,10 +176,45 @@ func (f *finder) leadingFrom(k, v int) (group.Permutation, error) {
 		return exchange(f.sites, f.path[k].site, v), nil
 	}
 	next, trace, err := f.single(&f.plain, f.path[k].before, v)
-	if err != nil || trace != f.path[k].trace {
+	if err != nil || trace != f.path[k].trace || !f.keepsSigns(&f.plain, k+1, next) {
 		return nil, err
 	}
 	return f.descend(&f.plain, k+1, next)
+}
+
+// before returns the colouring of the path before step k, or its end.
+func (f *finder) before(k int) colouring {
+	if k == len(f.path) {
+		return f.finest
+	}
+	return f.path[k].before
+}
+
+// keepsSigns compares the terms that the graph does not tell wholly, as far as
+// the colouring c, reached before step k, settles where their sites go.
+func (f *finder) keepsSigns(s *side, k int, c colouring) bool {
+	if len(s.graph.untold) == 0 {
+		return true
+	}
+	p := make(group.Permutation, f.sites)
+	members, there := make([]int, f.sites), make([]int, f.sites)
+	for v, colour := range f.before(k) {
+		there[colour] = v
+		members[colour]++
+	}
+	for v, colour := range c {
+		p[v] = there[colour]
+	}
+	for _, i := range s.graph.untold {
+		settled := true
+		for _, factor := range s.terms.terms[i].Factors {
+			settled = settled && members[c[s.terms.space.Mode(factor.Mode).Site]] == 1
+		}
+		if settled && !s.terms.termSentTo(f.plain.terms, p, i) {
+			return false
+		}
+	}
+	return true
 }
 
 // descend looks for a permutation that takes side s to the plain one and
@@ -198,7 +233,7 @@ func (f *finder) descend(s *side, k int, c colouring) (group.Permutation, error)
 		if err != nil {
 			return nil, err
 		}
-		if trace == here.trace {
+		if trace == here.trace && f.keepsSigns(s, k+1, next) {
 			p, err := f.descend(s, k+1, next)
 			if p != nil || err != nil {
 				return p, err
