@@ -73,7 +73,7 @@ func New(ctx context.Context, space *Space, sector Sector, opts *Options) (*Basi
 	if space == nil {
 		return nil, fmt.Errorf("basis: no space; make one with NewSpace or Uniform")
 	}
-	if err := sector.check(space); err != nil {
+	if err := sector.Check(space); err != nil {
 		return nil, err
 	}
 	o := opts.withDefaults()

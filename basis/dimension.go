@@ -29,7 +29,7 @@ func Dimension(space *Space, sector Sector) (int64, error) {
 	if space == nil {
 		return 0, fmt.Errorf("basis: no space; make one with NewSpace or Uniform")
 	}
-	if err := sector.check(space); err != nil {
+	if err := sector.Check(space); err != nil {
 		return 0, err
 	}
 	if len(sector.Constraints) > 0 {

@@ -19,10 +19,10 @@ type Sector struct {
 // ErrEmpty is wrapped by the errors for sectors that hold no state.
 var ErrEmpty = errors.New("the sector holds no state")
 
-// check reports the first reason for which the sector is not one of the space:
+// Check reports the first reason for which the sector is not one of the space:
 // an impossible charge, symmetry or constraint, a symmetry that changes a
 // charge or a constraint.
-func (k Sector) check(space *Space) error {
+func (k Sector) Check(space *Space) error {
 	for _, q := range k.Charges {
 		if err := q.Charge.Check(space); err != nil {
 			return err
