@@ -288,6 +288,7 @@ func TestOrdersOfClustersAgainstACount(t *testing.T) {
 		"honeycomb 24":    ofCluster(t, lattice.Honeycomb(), [2]int{2, 2}, [2]int{-2, 4}),
 		"checkerboard 32": ofCluster(t, lattice.Checkerboard(), [2]int{4, 0}, [2]int{0, 4}),
 		"Shrikhande":      shrikhande(),
+		"Latin square":    latinSquare(r, 8),
 	}
 	for k := range 4 {
 		cases[fmt.Sprint("random of degree 3, ", k)] = regular(r, 30, 3)
@@ -317,6 +318,25 @@ func TestOrdersOfClustersAgainstACount(t *testing.T) {
 			t.Errorf("%s: %v; counted 2·%d", name, s, count)
 		}
 	}
+}
+
+// latinSquare returns the strongly regular graph of a Latin square of order n, a
+// power of two, mixed by exchanges in squares of two by two: cells are joined
+// if they share the row, the column or the symbol. Sites look alike to any
+// refinement, yet few symmetries remain, if any.
+func latinSquare(r *rand.Rand, n int) graph {
+	symbol := make([]int, n*n)
+	for x := range symbol {
+		symbol[x] = x/n ^ x%n
+	}
+	for range 5000 {
+		a, b, c, d := r.IntN(n)*n, r.IntN(n)*n, r.IntN(n), r.IntN(n)
+		if a != b && c != d && symbol[a+c] == symbol[b+d] && symbol[a+d] == symbol[b+c] {
+			symbol[a+c], symbol[a+d] = symbol[a+d], symbol[a+c]
+			symbol[b+c], symbol[b+d] = symbol[b+d], symbol[b+c]
+		}
+	}
+	return where(n*n, func(i, j int) bool { return i/n == j/n || i%n == j%n || symbol[i] == symbol[j] })
 }
 
 // regular returns a random graph in which every site has d neighbours.
