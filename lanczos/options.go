@@ -3,6 +3,7 @@ package lanczos
 import (
 	"math"
 	"runtime"
+	"time"
 )
 
 const (
@@ -72,6 +73,17 @@ type Options struct {
 	// Workers is the number of goroutines that add vectors; it does not change the
 	// result. 0 means one for each processor.
 	Workers int
+	// Checkpoint, if not nil, is handed the state of the search now and then, between
+	// two restarts, and where the context ends a run that collects levels. Its error
+	// ends the search. See Checkpoint.Save.
+	Checkpoint func(c *Checkpoint) error
+	// CheckpointEvery is the least time between two calls of Checkpoint; default
+	// DefaultCheckpointEvery.
+	CheckpointEvery time.Duration
+	// Resume goes on from a checkpoint of a search for the same levels of the same
+	// operator with the same settings; Start is then not used. Products, Memory,
+	// Workers and the hooks may differ where they lead to the same Krylov.
+	Resume *Checkpoint
 	// Progress is called at most about ten times a second, from the goroutine that
 	// called Lowest, with the number of products done; total 0 means unknown; rate
 	// is products a second.
@@ -119,6 +131,9 @@ func resolve(op Operator, k int, opts *Options) (settings, error) {
 	}
 	if s.Seed == 0 {
 		s.Seed = DefaultSeed
+	}
+	if s.CheckpointEvery <= 0 {
+		s.CheckpointEvery = DefaultCheckpointEvery
 	}
 	if s.Workers == 0 {
 		s.Workers = runtime.GOMAXPROCS(0)

@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"time"
 
 	"ketloom/basis/pages"
 )
@@ -30,6 +31,16 @@ type found[T scalar] struct {
 	vector           []T
 }
 
+// spent counts what a search has used up.
+type spent struct{ products, restarts, starts int }
+
+// beginning is what a checking run starts from, beside the found vectors.
+type beginning struct {
+	spent spent
+	check Check
+	size  float64
+}
+
 // search holds the state of one call of Lowest.
 type search[T scalar] struct {
 	settings
@@ -48,13 +59,18 @@ type search[T scalar] struct {
 	work  []T
 	turn  []T     // coefficients of a rotation in the basis
 	size  float64 // lower bound of ‖H‖
-	spent struct{ products, restarts, starts int }
+	spent spent
 	check Check
 	cut   bool
+
+	judged  int        // size of the space at the last look at the Ritz values
+	resumed bool       // the next run goes on instead of beginning
+	before  *beginning // of the checking run; nil in others
+	saved   time.Time
 }
 
 func newSearch[T scalar](ctx context.Context, op Operator, s settings, f field[T]) *search[T] {
-	r := &search[T]{settings: s, ctx: ctx, op: op, f: f, clock: newClock(s.Progress)}
+	r := &search[T]{settings: s, ctx: ctx, op: op, f: f, clock: newClock(s.Progress), saved: time.Now()}
 	r.space = newSpace(f, s.dim, s.Workers)
 	r.basis = make([][]T, s.Krylov+1)
 	for i := range r.basis {
@@ -68,7 +84,12 @@ func newSearch[T scalar](ctx context.Context, op Operator, s settings, f field[T
 
 // find runs until k levels are found and checked.
 func (s *search[T]) find() (*Result, error) {
-	err := s.warmStart()
+	var err error
+	if s.Resume != nil {
+		err = s.resume()
+	} else {
+		err = s.warmStart()
+	}
 	for err == nil && len(s.found) < s.k {
 		err = s.gather()
 	}
@@ -76,7 +97,13 @@ func (s *search[T]) find() (*Result, error) {
 		return s.finish(true, nil, "all levels converged; no check asked for")
 	}
 	for err == nil && !s.check.Done {
-		err = s.verify()
+		if err = s.checkpoint(false); err == nil {
+			s.before = &beginning{s.spent, s.check, s.size}
+			err = s.verify()
+		}
+		if err == nil {
+			s.before = nil
+		}
 	}
 	if err == nil {
 		return s.finish(true, nil, "all levels converged and checked")
@@ -87,6 +114,9 @@ func (s *search[T]) find() (*Result, error) {
 		s.salvage()
 		return s.finish(true, nil, fmt.Sprintf("limit of %d products", s.Products))
 	case ctxErr != nil && errors.Is(err, ctxErr):
+		if err := s.checkpoint(true); err != nil {
+			return nil, err
+		}
 		s.salvage()
 		return s.finish(false, ctxErr, ctxErr.Error())
 	}
@@ -158,12 +188,15 @@ func (s *search[T]) reserve() {
 func (s *search[T]) run(judge func(exhausted bool) (take int, done bool)) error {
 	s.reserve()
 	m := s.matrix
-	m.reset()
+	if !s.resumed {
+		m.reset()
+		s.judged = 0
+	}
+	s.resumed = false
 	interval := 4 // products between two looks at the Ritz values
 	if s.dim > 20000 {
 		interval = 2
 	}
-	judged := 0
 	for {
 		if err := s.step(); err != nil {
 			return err
@@ -173,10 +206,10 @@ func (s *search[T]) run(judge func(exhausted bool) (take int, done bool)) error 
 		if !exhausted && s.watch != nil {
 			s.watch.step(m)
 		}
-		if !exhausted && !full && !limit && m.size-judged < max(interval, m.size/10) {
+		if !exhausted && !full && !limit && m.size-s.judged < max(interval, m.size/10) {
 			continue
 		}
-		judged = m.size
+		s.judged = m.size
 		if err := m.solve(); err != nil {
 			return err
 		}
@@ -192,7 +225,12 @@ func (s *search[T]) run(judge func(exhausted bool) (take int, done bool)) error 
 		}
 		if full {
 			s.condense()
-			judged = m.size
+			s.judged = m.size
+			if s.watch == nil {
+				if err := s.checkpoint(false); err != nil {
+					return err
+				}
+			}
 		}
 	}
 }

@@ -123,6 +123,9 @@ func (a Action) Compose(b Action) Action {
 	c.Levels, c.Phases = make([][]int, n), make([][]Turn, n)
 	for i := range n {
 		levels := max(a.levelsAt(b.Sites[i]), b.levelsAt(i))
+		if levels == 0 {
+			continue // nothing is done there
+		}
 		c.Levels[i], c.Phases[i] = make([]int, levels), make([]Turn, levels)
 		for s := range levels {
 			middle := b.Level(i, s)
@@ -160,6 +163,9 @@ func (a Action) Inverse() Action {
 	c.Levels, c.Phases = make([][]int, len(a.Sites)), make([][]Turn, len(a.Sites))
 	for i, to := range a.Sites {
 		levels := a.levelsAt(i)
+		if levels == 0 {
+			continue
+		}
 		c.Levels[to], c.Phases[to] = make([]int, levels), make([]Turn, levels)
 		for s := range levels {
 			c.Levels[to][a.Level(i, s)] = s

@@ -19,6 +19,8 @@ type opener struct {
 var openers = map[string]opener{
 	"ketloom/lanczos/archive.Create":                    {"create", fence.Write},
 	"ketloom/lanczos/archive.Open":                      {"open", fence.Read},
+	"ketloom/lanczos.LoadCheckpoint":                    {"open", fence.Read},
+	"(ketloom/lanczos.Checkpoint).Save":                 {"save", fence.Write},
 	"ketloom/script/sweep.Open":                         {"open", fence.Write},
 	"(ketloom/script/report.SectorSpectrum).Save":       {"save", fence.Write},
 	"(ketloom/script/report.SpectralFlow).Save":         {"save", fence.Write},
