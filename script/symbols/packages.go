@@ -10,6 +10,7 @@ var Ketloom = []string{
 	"ketloom/lanczos/archive",
 	"ketloom/lanczos/dense",
 	"ketloom/lanczos/entangle",
+	"ketloom/lanczos/label",
 	"ketloom/operator",
 	"ketloom/operator/matrix",
 	"ketloom/operator/model",

@@ -13,6 +13,7 @@ func init() {
 	Table["ketloom/basis"] = map[string]reflect.Value{
 		"AtMost":        reflect.ValueOf(p_ketloom_basis.AtMost),
 		"Basis":         reflect.ValueOf((*p_ketloom_basis.Basis)(nil)),
+		"Batch":         reflect.ValueOf((*p_ketloom_basis.Batch)(nil)),
 		"Boson":         reflect.ValueOf(p_ketloom_basis.Boson),
 		"Charge":        reflect.ValueOf((*p_ketloom_basis.Charge)(nil)),
 		"ChargeValue":   reflect.ValueOf((*p_ketloom_basis.ChargeValue)(nil)),
@@ -22,8 +23,10 @@ func init() {
 		"Decode":        reflect.ValueOf(p_ketloom_basis.Decode),
 		"DecodeSpace":   reflect.ValueOf(p_ketloom_basis.DecodeSpace),
 		"DefaultMemory": reflect.ValueOf(constant.MakeFromLiteral("8589934592", token.INT, 0)),
+		"Dimension":     reflect.ValueOf(p_ketloom_basis.Dimension),
 		"Electron":      reflect.ValueOf(p_ketloom_basis.Electron),
 		"ErrEmpty":      reflect.ValueOf(&p_ketloom_basis.ErrEmpty).Elem(),
+		"ErrNoFormula":  reflect.ValueOf(&p_ketloom_basis.ErrNoFormula).Elem(),
 		"Fermion":       reflect.ValueOf(p_ketloom_basis.Fermion),
 		"HardCoreBoson": reflect.ValueOf(p_ketloom_basis.HardCoreBoson),
 		"Kind":          reflect.ValueOf((*p_ketloom_basis.Kind)(nil)),
@@ -44,6 +47,7 @@ func init() {
 		"Space":         reflect.ValueOf((*p_ketloom_basis.Space)(nil)),
 		"Spin":          reflect.ValueOf(p_ketloom_basis.Spin),
 		"SpinHalf":      reflect.ValueOf(p_ketloom_basis.SpinHalf),
+		"Transform":     reflect.ValueOf((*p_ketloom_basis.Transform)(nil)),
 		"Uniform":       reflect.ValueOf(p_ketloom_basis.Uniform),
 	}
 }
