@@ -80,11 +80,12 @@ func (r *rows) plan(o Options) (Plan, error) {
 	p := Plan{Rows: n, Columns: r.from.Len(), Real: r.isReal(), Exact: n <= sampleRows}
 	p.sample(r, min(n, sampleRows))
 	p.StoredBytes = p.Elements*elementBytes(p) + int64(n)*(8+numberBytes(p.Real)) + int64(p.Values)*numberBytes(p.Real)
-	p.choose(o, int64(r.kernels)*48)
+	flying := int64(r.kernels) * 48
 	if r.weights.from != nil { // the weighted source
 		p.StoredBytes += int64(p.Columns) * numberBytes(p.Real)
-		p.Bytes += int64(p.Columns) * numberBytes(p.Real)
+		flying += int64(p.Columns) * numberBytes(p.Real)
 	}
+	p.choose(o, flying)
 	if o.Form == Stored && p.StoredBytes > o.Memory {
 		return p, fmt.Errorf("matrix: the stored form needs %d MiB, more than the limit of %d MiB; raise Options.Memory or leave the form to Auto", p.StoredBytes>>20, o.Memory>>20)
 	}
