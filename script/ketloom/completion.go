@@ -1,6 +1,7 @@
 package main
 
 import (
+	"flag"
 	"fmt"
 	"os"
 	"strings"
@@ -20,19 +21,30 @@ func completion(args []string) int {
 		fmt.Fprintln(os.Stderr, "ketloom: completion wants the name of a shell: bash, zsh or fish")
 		return exitUsage
 	}
-	words, subjects := strings.Join(commands, " "), strings.Join(subjects(), " ")
+	words, subjects, flags := strings.Join(commands, " "), strings.Join(subjects(), " "), strings.Join(flagNames(), " ")
 	switch args[0] {
 	case "bash":
-		fmt.Printf(bashCompletion, words, subjects)
+		fmt.Printf(bashCompletion, words, subjects, flags)
 	case "zsh":
-		fmt.Printf(zshCompletion, words, subjects)
+		fmt.Printf(zshCompletion, words, subjects, flags)
 	case "fish":
 		fmt.Printf(fishCompletion, words, subjects)
+		for _, name := range flagNames() {
+			fmt.Printf("complete -c ketloom -n \"__fish_seen_subcommand_from run\" -o %s\n", name[1:])
+		}
 	default:
 		fmt.Fprintf(os.Stderr, "ketloom: no completion for the shell %q; there is one for bash, zsh and fish\n", args[0])
 		return exitUsage
 	}
 	return exitOK
+}
+
+// flagNames are the flags of ketloom run, with their dashes.
+func flagNames() []string {
+	var names []string
+	set, _ := runSet(&runFlags{})
+	set.VisitAll(func(f *flag.Flag) { names = append(names, "-"+f.Name) })
+	return names
 }
 
 // subjects are the short names of the packages with pages.
@@ -52,7 +64,8 @@ const bashCompletion = `_ketloom() {
 	fi
 	case ${COMP_WORDS[1]} in
 	doc) COMPREPLY=($(compgen -W "%s" -- "$word")) ;;
-	run | check) COMPREPLY=($(compgen -f -X '!*.go' -- "$word") $(compgen -d -- "$word")) ;;
+	run) COMPREPLY=($(compgen -W "%s" -- "$word") $(compgen -f -X '!*.go' -- "$word") $(compgen -d -- "$word")) ;;
+	check) COMPREPLY=($(compgen -f -X '!*.go' -- "$word") $(compgen -d -- "$word")) ;;
 	completion) COMPREPLY=($(compgen -W "bash zsh fish" -- "$word")) ;;
 	esac
 }
@@ -67,7 +80,8 @@ _ketloom() {
 	fi
 	case $words[2] in
 	doc) compadd %s ;;
-	run|check) _files -g '*.go' || _files -/ ;;
+	run) [[ $PREFIX == -* ]] && compadd -- %s || _files -g '*.go' || _files -/ ;;
+	check) _files -g '*.go' || _files -/ ;;
 	completion) compadd bash zsh fish ;;
 	esac
 }

@@ -23,21 +23,28 @@ type runFlags struct {
 
 var errNoScript = errors.New("it wants a script first: ketloom run [FLAGS] FILE-OR-FOLDER [-- ARGUMENTS]")
 
-// parseRun reads flags, script and arguments.
-func parseRun(args []string) (*runFlags, error) {
-	f := &runFlags{options: script.Options{Stdin: os.Stdin, Stdout: os.Stdout, Stderr: os.Stderr}}
+// runSet returns the flags of ketloom run, which set f, and the memory in GiB.
+func runSet(f *runFlags) (set *flag.FlagSet, memory *float64) {
 	o := &f.options
-	set := flag.NewFlagSet("run", flag.ContinueOnError)
+	set = flag.NewFlagSet("run", flag.ContinueOnError)
 	set.SetOutput(io.Discard)
 	set.Func("allow", "", f.allow)
 	set.StringVar(&o.Root, "root", "", "")
 	set.BoolVar(&o.Quiet, "quiet", false, "")
 	set.DurationVar(&o.Time, "time", 0, "")
 	set.Int64Var(&o.Steps, "steps", 0, "")
-	memory := set.Float64("memory", script.DefaultMemory>>30, "")
+	memory = set.Float64("memory", script.DefaultMemory>>30, "")
 	set.BoolVar(&f.json, "json", false, "")
 	set.BoolVar(&f.compiled, "compiled", false, "")
 	set.BoolVar(&f.watch, "watch", false, "")
+	return set, memory
+}
+
+// parseRun reads flags, script and arguments.
+func parseRun(args []string) (*runFlags, error) {
+	f := &runFlags{options: script.Options{Stdin: os.Stdin, Stdout: os.Stdout, Stderr: os.Stderr}}
+	o := &f.options
+	set, memory := runSet(f)
 	if err := set.Parse(args); err != nil {
 		return nil, fmt.Errorf("%w; ketloom help run lists the flags", err)
 	}

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"fmt"
 	"os"
 	"os/exec"
 	"path/filepath"
@@ -81,9 +82,12 @@ func TestBashCompletes(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	cmd := exec.Command(bash, "-c", string(out)+"\nCOMP_WORDS=(ketloom doc ent); COMP_CWORD=2; _ketloom; echo ${COMPREPLY[@]}")
-	answer, err := cmd.CombinedOutput()
-	if err != nil || strings.TrimSpace(string(answer)) != "entangle" {
-		t.Errorf("%v: %s", err, answer)
+	for words, want := range map[string]string{"doc ent": "entangle", "run -al": "-allow", "comp": "completion"} {
+		last := len(strings.Fields(words))
+		cmd := exec.Command(bash, "-c", fmt.Sprintf("%s\nCOMP_WORDS=(ketloom %s); COMP_CWORD=%d; _ketloom; echo ${COMPREPLY[@]}", out, words, last))
+		answer, err := cmd.CombinedOutput()
+		if err != nil || strings.TrimSpace(string(answer)) != want {
+			t.Errorf("%s: %v: %s", words, err, answer)
+		}
 	}
 }
