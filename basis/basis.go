@@ -238,6 +238,10 @@ func (b *Basis) Stabiliser(i int) int {
 	return int(b.stab[i]) + 1
 }
 
+// Stabilisers returns the sizes of all stabilisers, each less one; nil without
+// symmetries. The slice is shared and must not be changed.
+func (b *Basis) Stabilisers() []uint16 { return b.stab }
+
 // Real reports whether all phases of the basis are +1 or -1, so that operators
 // with real matrix elements between product states have real ones here.
 func (b *Basis) Real() bool { return b.sym == nil || b.sym.units.denominator <= 2 }

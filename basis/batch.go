@@ -28,18 +28,22 @@ type folded struct {
 //
 // Cost: nothing is allocated once the batch has grown.
 func (b *Basis) LocateAll(batch *Batch) {
-	n := len(batch.Configurations)
-	batch.States = grown(batch.States, n)
-	batch.Phases = grown(batch.Phases, n)
+	batch.prepare(len(batch.Configurations))
 	if b.sym == nil || b.sym.cosets > 1<<16 {
 		for i, c := range batch.Configurations {
 			batch.States[i], batch.Phases[i] = b.locateOne(c)
 		}
 		return
 	}
-	batch.found = grown(batch.found, n)
 	b.sym.fold(batch.Configurations, batch.found)
 	b.lookUp(batch)
+}
+
+// prepare makes room for n results.
+func (b *Batch) prepare(n int) {
+	b.States = grown(b.States, n)
+	b.Phases = grown(b.Phases, n)
+	b.found = grown(b.found, n)
 }
 
 func grown[T any](list []T, n int) []T {
@@ -68,19 +72,27 @@ func (s *symmetry) fold(list []Configuration, found []folded) {
 	for j := 1; j < s.cosets; j++ {
 		for i, c := range list {
 			w := s.enter.image(j, uint64(c)&^s.outside)
-			entry := entries[w>>s.cut]
-			f := &found[i]
-			if k := classOf(f.entry); classOf(entry) < k {
-				f.word, f.entry, f.path[0], f.again = w, entry, uint16(j), false
-			} else if classOf(entry) == k {
-				f.again = true
-			}
+			found[i].reach(w, entries[w>>s.cut], j)
 		}
 	}
+	s.settle(found, func(i int) bool { return uint64(list[i])&s.outside == 0 })
+}
+
+// reach takes the word under coset j if its pattern is smaller.
+func (f *folded) reach(w uint64, entry uint32, j int) {
+	if k := classOf(f.entry); classOf(entry) < k {
+		f.word, f.entry, f.path[0], f.again = w, entry, uint16(j), false
+	} else if classOf(entry) == k {
+		f.again = true
+	}
+}
+
+// settle finds the lower bits once the smallest patterns are known.
+func (s *symmetry) settle(found []folded, inside func(i int) bool) {
 	for i := range found {
 		f := &found[i]
 		f.path[1] = viaOf(f.entry)
-		if classOf(f.entry) == noClass || uint64(list[i])&s.outside != 0 {
+		if classOf(f.entry) == noClass || s.outside != 0 && !inside(i) {
 			f.again = true
 			continue
 		}

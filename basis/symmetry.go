@@ -26,6 +26,7 @@ type symmetry struct {
 	ofKept       []uint32 // χ(h)*
 	units        *units
 	plain        bool // no phases but those of χ
+	straight     bool // symmetries move bits and flip some, whatever the others are
 }
 
 // path names the element t·h·g_j.
@@ -99,6 +100,7 @@ func (s *symmetry) split(space *Space, elements []group.Element, movers []*Mover
 	keepers, s.ofKept = choose(kept)
 	enterers, s.ofCoset = choose(cosets)
 	s.kept, s.cosets = len(kept), len(cosets)
+	s.straight = moveBits(space, enterers)
 	s.enter = newImages(plain, s.words, 0, enterers, s.units)
 	s.exchange = newImages(s.words, s.words, s.cut, enterers, nil)
 	s.keep = newImages(s.words, s.words, s.cut, keepers, s.units)
@@ -145,6 +147,21 @@ func (s *symmetry) lower(h int, w uint64) uint64 {
 		out |= table[k.offset+int(w>>k.shift&k.mask)]
 	}
 	return uint64(out)
+}
+
+// moveBits reports whether symmetries act on bits one by one: a mode of more than two
+// levels keeps its levels.
+func moveBits(space *Space, movers []*Mover) bool {
+	for _, mv := range movers {
+		for m, levels := range mv.Levels {
+			for level, to := range levels {
+				if space.modes[m].Levels > 2 && level != to {
+					return false
+				}
+			}
+		}
+	}
+	return true
 }
 
 // inverses returns, for each of the listed elements, the place of its inverse

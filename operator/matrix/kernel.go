@@ -18,19 +18,46 @@ type kernel struct {
 	coefficient complex128
 }
 
+// exchange is two kernels in one: those with the same mask, flip, signs and
+// coefficient whose values are the two parts of the mask. It acts where c&mask is
+// neither nothing nor all of the mask, if one of the two values is meant.
+type exchange struct {
+	kernel
+	other uint64 // the second value
+	hop   int
+}
+
 // bundle is the kernels that ask for the same occupied bits, so that one test
 // passes over all of them.
 type bundle struct {
 	value   uint64
 	kernels []kernel
+	hops    []int // number of each
 }
 
-// bundled groups kernels by their occupied bits; groups and kernels keep the
-// order in which they are met first.
-func bundled(list []kernel) []bundle {
-	var bundles []bundle
+// paired takes out the kernels that are two halves of an exchange, and bundles the
+// others by their occupied bits. Kernels are numbered in the order in which rows try
+// them; flips has the flip of each number. Groups keep the order in which they are met
+// first.
+func paired(list []kernel) (exchanges []exchange, bundles []bundle, flips []basis.Configuration) {
+	half := map[kernel]int{} // with the value replaced by the other one
+	taken := make([]bool, len(list))
+	for i, k := range list {
+		twin := k
+		twin.value = k.mask &^ k.value
+		if at, ok := half[k]; ok && !taken[at] && k.value != twin.value {
+			taken[at], taken[i] = true, true
+			exchanges = append(exchanges, exchange{kernel: list[at], other: k.value, hop: len(flips)})
+			flips = append(flips, basis.Configuration(k.flip))
+			continue
+		}
+		half[twin] = i
+	}
 	place := map[uint64]int{}
-	for _, k := range list {
+	for i, k := range list {
+		if taken[i] {
+			continue
+		}
 		at, known := place[k.value]
 		if !known {
 			at = len(bundles)
@@ -39,7 +66,13 @@ func bundled(list []kernel) []bundle {
 		}
 		bundles[at].kernels = append(bundles[at].kernels, k)
 	}
-	return bundles
+	for i := range bundles {
+		for _, k := range bundles[i].kernels {
+			bundles[i].hops = append(bundles[i].hops, len(flips))
+			flips = append(flips, basis.Configuration(k.flip))
+		}
+	}
+	return exchanges, bundles, flips
 }
 
 // compile translates the canonical form of op; those that leave a configuration

@@ -57,14 +57,20 @@ func Estimate(op operator.Operator, b *basis.Basis, opts *Options) (Plan, error)
 func newRows(op operator.Operator, from, to *basis.Basis) *rows {
 	r := &rows{to: to, from: from, phases: from.Phases()}
 	diagonal, moving := compile(op.Adjoint())
-	r.diagonal, r.moving, r.kernels = diagonal, bundled(moving), len(diagonal)+len(moving)
+	swaps, bundles, flips := paired(moving)
+	r.diagonal, r.swaps, r.moving, r.kernels = diagonal, swaps, bundles, len(diagonal)+len(moving)
+	r.still, r.hops = len(flips), from.Hops(append(flips, 0))
 	r.weights = newWeights(to, from)
 	return r
 }
 
 // isReal reports whether every element is real.
 func (r *rows) isReal() bool {
-	for _, b := range append([]bundle{{kernels: r.diagonal}}, r.moving...) {
+	bundles := append([]bundle{{kernels: r.diagonal}}, r.moving...)
+	for _, x := range r.swaps {
+		bundles = append(bundles, bundle{kernels: []kernel{x.kernel}})
+	}
+	for _, b := range bundles {
 		for _, k := range b.kernels {
 			if imag(k.coefficient) != 0 {
 				return false

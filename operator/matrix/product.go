@@ -46,7 +46,7 @@ func (m *Matrix) weighted(src []float64) []float64 {
 	dst := m.product.real
 	m.share(m.plan.Columns, func(first, last int, _ *scratch) {
 		for j := first; j < last; j++ {
-			dst[j] = w.column(j) * src[j]
+			dst[j] = w.columns[w.from[j]] * src[j]
 		}
 	})
 	return dst
@@ -54,14 +54,21 @@ func (m *Matrix) weighted(src []float64) []float64 {
 
 // finish weights the sums of the rows and adds the diagonal.
 func (m *Matrix) finish(dst, src []float64, first, last int) {
-	if w := &m.rows.weights; w.to != nil {
-		for i := first; i < last; i++ {
-			dst[i] *= w.row(i)
+	w, diagonal := &m.rows.weights, m.store.realDiagonal
+	switch {
+	case w.to != nil && diagonal != nil:
+		to, rows := w.to[first:last], w.rows
+		diagonal, src = diagonal[first:last], src[first:last]
+		for i, x := range dst[first:last] {
+			dst[first+i] = float64(rows[to[i]]*x) + float64(diagonal[i]*src[i])
 		}
-	}
-	if d := m.store.realDiagonal; d != nil {
+	case w.to != nil:
 		for i := first; i < last; i++ {
-			dst[i] += d[i] * src[i]
+			dst[i] *= w.rows[w.to[i]]
+		}
+	case diagonal != nil:
+		for i := first; i < last; i++ {
+			dst[i] += diagonal[i] * src[i]
 		}
 	}
 }
@@ -97,7 +104,7 @@ func (m *Matrix) weightedComplex(src []complex128) []complex128 {
 	dst := m.product.complex
 	m.share(m.plan.Columns, func(first, last int, _ *scratch) {
 		for j := first; j < last; j++ {
-			f := w.column(j)
+			f := w.columns[w.from[j]]
 			dst[j] = complex(f*real(src[j]), f*imag(src[j]))
 		}
 	})

@@ -17,7 +17,10 @@ import (
 type rows struct {
 	to, from *basis.Basis
 	diagonal []kernel // of O†, those that leave a configuration as it is
+	swaps    []exchange
 	moving   []bundle // of O†, the others
+	hops     *basis.Hops
+	still    int // the hop that flips nothing
 	kernels  int
 	phases   []complex128
 	weights  weights
@@ -30,7 +33,8 @@ type scratch struct {
 	values  []complex128 // without the norms
 
 	batch basis.Batch
-	made  []complex128 // amplitude of each configuration of the batch
+	which []int        // hops that the configuration allows
+	made  []complex128 // amplitude of each
 	order []uint64     // column and place of each, to be sorted
 }
 
@@ -61,16 +65,17 @@ func (r *rows) row(i int, s *scratch) (diagonal complex128) {
 // leaves the configuration as it is, where both bases are the same.
 func (r *rows) raw(i int, s *scratch) (diagonal complex128) {
 	c := uint64(r.to.At(i))
-	list, made := s.batch.Configurations[:0], s.made[:0]
+	which, made := s.which[:0], s.made[:0]
 	var here complex128
 	for k := range r.diagonal {
 		if d := &r.diagonal[k]; c&d.mask == d.value {
 			here += d.amplitude(c)
 		}
 	}
-	if here != 0 && r.to != r.from {
-		list, made = append(list, basis.Configuration(c)), append(made, here)
-		here = 0
+	for k := range r.swaps {
+		if x := &r.swaps[k]; c&x.mask == x.value || c&x.mask == x.other {
+			which, made = append(which, x.hop), append(made, x.amplitude(c))
+		}
 	}
 	for k := range r.moving {
 		b := &r.moving[k]
@@ -79,12 +84,16 @@ func (r *rows) raw(i int, s *scratch) (diagonal complex128) {
 		}
 		for n := range b.kernels {
 			if m := &b.kernels[n]; c&m.mask == m.value {
-				list, made = append(list, basis.Configuration(c^m.flip)), append(made, m.amplitude(c))
+				which, made = append(which, b.hops[n]), append(made, m.amplitude(c))
 			}
 		}
 	}
-	s.batch.Configurations, s.made = list, made
-	r.from.LocateAll(&s.batch)
+	if here != 0 && r.to != r.from {
+		which, made = append(which, r.still), append(made, here)
+		here = 0
+	}
+	s.which, s.made = which, made
+	r.hops.LocateAll(basis.Configuration(c), which, &s.batch)
 	trivial := len(r.phases) == 1
 	for n, amplitude := range made {
 		if !trivial {

@@ -14,8 +14,8 @@ import (
 //
 // Products scale the source before and the result after.
 type weights struct {
-	from, to *basis.Basis // nil where all weights are one
-	columns  []float64    // by stabiliser, less one
+	from, to []uint16  // stabilisers, less one; nil where all weights are one
+	columns  []float64 // by stabiliser, less one
 	rows     []float64
 }
 
@@ -23,7 +23,7 @@ func newWeights(to, from *basis.Basis) weights {
 	w := weights{}
 	unfold := to.GroupOrder() == 1 && from.GroupOrder() > 1
 	if unfold || !free(from) {
-		w.from = from
+		w.from = from.Stabilisers()
 		for size := 1; size <= from.GroupOrder(); size++ {
 			x := float64(size)
 			if unfold {
@@ -33,7 +33,7 @@ func newWeights(to, from *basis.Basis) weights {
 		}
 	}
 	if !free(to) {
-		w.to = to
+		w.to = to.Stabilisers()
 		for size := 1; size <= to.GroupOrder(); size++ {
 			w.rows = append(w.rows, 1/math.Sqrt(float64(size)))
 		}
@@ -43,8 +43,8 @@ func newWeights(to, from *basis.Basis) weights {
 
 // free reports whether no symmetry keeps any representative.
 func free(b *basis.Basis) bool {
-	for i := range b.Len() {
-		if b.Stabiliser(i) > 1 {
+	for _, s := range b.Stabilisers() {
+		if s > 0 {
 			return false
 		}
 	}
@@ -55,12 +55,12 @@ func (w *weights) column(j int) float64 {
 	if w.from == nil {
 		return 1
 	}
-	return w.columns[w.from.Stabiliser(j)-1]
+	return w.columns[w.from[j]]
 }
 
 func (w *weights) row(i int) float64 {
 	if w.to == nil {
 		return 1
 	}
-	return w.rows[w.to.Stabiliser(i)-1]
+	return w.rows[w.to[i]]
 }
