@@ -22,10 +22,13 @@ func TestPartsAddUpToTheWhole(t *testing.T) {
 		t.Errorf("%v, %v", dims, err)
 	}
 	for name, try := range map[string]func() error{
-		"add up to":        func() error { _, err := Whole(s, whole, parts, []int{1, 1, 2, 1}); return err },
-		"one each":         func() error { _, err := Whole(s, whole, parts, []int{1}); return err },
-		"multiplicity 0":   func() error { _, err := Whole(s, whole, parts, []int{1, 2, 2, 0}); return err },
-		"no closed count":  func() error { _, err := Whole(s, Sector{Constraints: []Constraint{AtMost(1, []int{0})}}, nil, nil); return err },
+		"add up to":      func() error { _, err := Whole(s, whole, parts, []int{1, 1, 2, 1}); return err },
+		"one each":       func() error { _, err := Whole(s, whole, parts, []int{1}); return err },
+		"multiplicity 0": func() error { _, err := Whole(s, whole, parts, []int{1, 2, 2, 0}); return err },
+		"no closed count": func() error {
+			_, err := Whole(s, Sector{Constraints: []Constraint{AtMost(1, []int{0})}}, nil, nil)
+			return err
+		},
 		"no space; make o": func() error { _, err := Whole(nil, whole, nil, nil); return err },
 	} {
 		if err := try(); err == nil || !strings.Contains(err.Error(), name) {
