@@ -47,6 +47,7 @@ func prepare(o Options, run *machine.Run) (*source, *lower.Program, error) {
 	if len(problems) > 0 {
 		return src, nil, problems
 	}
+	run.Bound = bound(src, run)
 	p, refused := lower.Compile(lower.Input{Fset: src.fset, Files: src.files, Info: info, Package: pkg, Universe: u, Run: run})
 	for _, r := range refused {
 		problems = append(problems, src.at(r.Pos, "%s", r.Message))

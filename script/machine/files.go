@@ -27,6 +27,8 @@ var openers = map[string]opener{
 	"(ketloom/script/report.EntanglementSpectrum).Save": {"save", fence.Write},
 	"(ketloom/script/report.EntropyProfile).Save":       {"save", fence.Write},
 	"(ketloom/script/report.Table).Save":                {"save", fence.Write},
+	"(ketloom/script/report/page.Page).Save":            {"save", fence.Write},
+	"(ketloom/script/report/page.Page).Archive":         {"open", fence.Read},
 }
 
 // Opens says that a function is known to take a path.

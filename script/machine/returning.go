@@ -1,6 +1,7 @@
 package machine
 
 import (
+	"maps"
 	"os"
 
 	"ketloom/script/progress"
@@ -15,6 +16,7 @@ func (r *Run) hosted() map[string]any {
 			}
 		},
 	}
+	maps.Copy(list, r.Bound)
 	if r.Quiet {
 		list["ketloom/script/progress.Terminal"] = func(*os.File) *progress.Display { return progress.Terminal(nil) }
 	}

@@ -33,11 +33,14 @@ type Run struct {
 	own     map[uint64]bool // numbers of the goroutines that the script started
 	process *process
 	// Fence judges paths; nil judges none, which is for scripts that are only
-	// checked. It, Limits, Return and Quiet are set before the script is lowered.
+	// checked. It, Limits, Return, Bound and Quiet are set before the script is lowered.
 	Fence  *fence.Fence
 	Limits Limits
 	// Return takes what the script hands to its host; nil drops it.
 	Return func(name string, value any)
+	// Bound are functions that the run has in place of those of the same import
+	// path and name.
+	Bound map[string]any
 	// Quiet keeps progress off the terminal.
 	Quiet bool
 	turns atomic.Int64

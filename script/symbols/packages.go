@@ -17,6 +17,7 @@ var Ketloom = []string{
 	"ketloom/script/host",
 	"ketloom/script/progress",
 	"ketloom/script/report",
+	"ketloom/script/report/page",
 	"ketloom/script/sweep",
 }
 

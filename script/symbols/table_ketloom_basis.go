@@ -29,6 +29,7 @@ func init() {
 		"ErrNoFormula":  reflect.ValueOf(&p_ketloom_basis.ErrNoFormula).Elem(),
 		"Fermion":       reflect.ValueOf(p_ketloom_basis.Fermion),
 		"HardCoreBoson": reflect.ValueOf(p_ketloom_basis.HardCoreBoson),
+		"Hops":          reflect.ValueOf((*p_ketloom_basis.Hops)(nil)),
 		"Kind":          reflect.ValueOf((*p_ketloom_basis.Kind)(nil)),
 		"KindBoson":     reflect.ValueOf(p_ketloom_basis.KindBoson),
 		"KindElectron":  reflect.ValueOf(p_ketloom_basis.KindElectron),
@@ -49,5 +50,6 @@ func init() {
 		"SpinHalf":      reflect.ValueOf(p_ketloom_basis.SpinHalf),
 		"Transform":     reflect.ValueOf((*p_ketloom_basis.Transform)(nil)),
 		"Uniform":       reflect.ValueOf(p_ketloom_basis.Uniform),
+		"Whole":         reflect.ValueOf(p_ketloom_basis.Whole),
 	}
 }

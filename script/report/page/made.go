@@ -11,7 +11,10 @@ import (
 
 // made is the folded end of the page: what made it.
 func (p *Page) made() (string, error) {
-	s := p.script()
+	s := p.Script
+	if s == nil {
+		s = &Script{}
+	}
 	var b strings.Builder
 	b.WriteString("<details class=\"made\" id=\"made\">\n<summary>" + p.summary(s) + "</summary>\n<dl>\n")
 	line := func(term, text string) {

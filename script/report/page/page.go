@@ -7,6 +7,7 @@ import (
 	"io"
 	"os"
 	"runtime"
+	"slices"
 	"time"
 
 	"ketloom/script/report"
@@ -32,13 +33,11 @@ type Page struct {
 	Reproducible bool
 	// Language is that of the words, as in the attribute lang of HTML; "" means "en".
 	Language string
-	// Script is what wrote the page. New fills it in a run of the interpreter;
-	// where it is nil, Write looks for the source on the disk.
+	// Script is what writes the page; New fills it. With nil, or without files,
+	// the page says that the source was not at hand.
 	Script *Script
 
 	title    string
-	caller   string // file of the caller of New
-	args     []string
 	body     []part
 	contents []heading
 	ids      map[string]bool
@@ -62,10 +61,17 @@ type part struct {
 
 type pair struct{ name, value string }
 
-// New returns an empty page with a title.
+// New returns an empty page with a title. Its Script is the one that calls New: the
+// interpreter knows its source; a compiled program reads the Go files of the
+// calling package from where it was built, if they are still there.
 func New(title string) *Page {
-	p := &Page{title: title, args: os.Args[1:], ids: map[string]bool{}, now: time.Now}
-	_, p.caller, _, _ = runtime.Caller(1)
+	_, caller, _, _ := runtime.Caller(1) // "" if it is not known
+	return By(title, &Script{Files: packageOf(caller), Args: slices.Clone(os.Args[1:])})
+}
+
+// By returns an empty page with a title that the given script writes.
+func By(title string, script *Script) *Page {
+	p := &Page{title: title, Script: script, ids: map[string]bool{}, now: time.Now}
 	if title == "" {
 		p.fail(fmt.Errorf("page: %w: no title; give one to New", ErrContent))
 	}

@@ -11,6 +11,7 @@ import (
 	"os"
 	"path/filepath"
 	"regexp"
+	"slices"
 	"strings"
 	"testing"
 	"time"
@@ -447,10 +448,10 @@ func TestSourceOfACompiledProgram(t *testing.T) {
 		t.Error(got)
 	}
 	p := New("t")
-	if got := p.script().Files; len(got) == 0 {
+	if p.Script == nil || !slices.ContainsFunc(p.Script.Files, func(f File) bool { return f.Name == "page_test.go" }) {
 		t.Error("the caller of New was not found")
 	}
-	p.caller = filepath.Join(folder, "gone", "a.go")
+	p.Script.Files = packageOf(filepath.Join(folder, "gone", "a.go"))
 	var b bytes.Buffer
 	if err := p.Write(&b); err != nil || !strings.Contains(b.String(), "<p>The source of the script was not at hand when the page was written.</p>") {
 		t.Errorf("%v\n%s", err, &b)

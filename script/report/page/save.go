@@ -32,6 +32,10 @@ func (p *Page) Save(path string) error {
 // replace puts data at path, whole or not at all: a new file in the same folder
 // is written, synced and renamed.
 func replace(path string, data []byte) error {
+	folder := filepath.Dir(path)
+	if info, err := os.Stat(folder); errors.Is(err, fs.ErrNotExist) || err == nil && !info.IsDir() {
+		return fmt.Errorf("there is no folder %s; make it first: %w", folder, fs.ErrNotExist)
+	}
 	if info, err := os.Stat(path); err == nil && info.IsDir() {
 		return fmt.Errorf("a folder has this name; give another: %w", fs.ErrExist)
 	}

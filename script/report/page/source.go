@@ -20,14 +20,6 @@ type Script struct {
 // File is a file of a script: its name without folders, and its text.
 type File struct{ Name, Text string }
 
-// script is what wrote the page; it has no files if the source is not at hand.
-func (p *Page) script() *Script {
-	if p.Script != nil {
-		return p.Script
-	}
-	return &Script{Files: packageOf(p.caller), Args: p.args}
-}
-
 // packageOf reads the package that a file belongs to: the Go files of its folder for
 // this system, without tests. Where several of them have a function main each is
 // a script of its own, and the file stands alone.
