@@ -95,6 +95,10 @@ func (p *Page) prose(source string) (string, error) {
 	if err := md.Renderer().Render(&out, src, doc); err != nil {
 		return "", err
 	}
+	// References such as &#12; have become characters.
+	if err := checkText("text", out.String()); err != nil {
+		return "", err
+	}
 	return out.String(), nil
 }
 
