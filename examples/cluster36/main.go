@@ -128,7 +128,7 @@ func study(ctx context.Context, s settings) error {
 // ground finds the lowest level, from the checkpoint if there is one.
 func ground(ctx context.Context, s settings, m *matrix.Matrix, bar *progress.Display) (*lanczos.Result, error) {
 	// Without the proof the residual alone bounds the error, so it is made small.
-	opts := &lanczos.Options{Tolerance: 3e-12, Memory: int64(s.vectors) << 30, Workers: s.workers, Unchecked: !s.proof, Progress: bar.Report}
+	opts := &lanczos.Options{Tolerance: 1.2e-11, Memory: int64(s.vectors) << 30, Workers: s.workers, Unchecked: !s.proof, Progress: bar.Report}
 	if s.state != "" {
 		opts.Checkpoint = func(c *lanczos.Checkpoint) error { return c.Save(s.state) }
 		old, err := lanczos.LoadCheckpoint(s.state)
