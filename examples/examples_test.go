@@ -21,8 +21,8 @@ var cases = []struct {
 	args    []string
 	files   []string
 }{
-	{"chernband", []string{"-lx", "4", "-ly", "3", "-particles", "4", "-flux", "4", "-out", "small", "-json", "small.json"},
-		[]string{"small.json", "small/spectrum.svg", "small/flow.svg"}},
+	{"chernband", []string{"-lx", "4", "-ly", "3", "-particles", "4", "-flux", "4", "-out", "small", "-json", "small.json", "-page", "small/study.html", "-plain"},
+		[]string{"small.json", "small/spectrum.svg", "small/flow.svg", "small/study.html"}},
 	{"particlecut", []string{"-archive", "small/ground.ket", "-part", "2", "-figure", "small/particlecut.svg", "-json", "cut.json"},
 		[]string{"cut.json", "small/particlecut.svg"}},
 	{"chernband", []string{"-model", "checkerboard-neupert", "-lx", "6", "-ly", "3", "-particles", "6", "-flux", "2", "-direction", "y", "-everywhere", "-levels", "3", "-out", "neupert"}, nil},

@@ -6,18 +6,18 @@ import (
 	"ketloom/script/report"
 )
 
-// page returns the size and the note of a figure of this study.
-func (s settings) page() report.Page {
+// sheet returns the size and the note of a figure of this study.
+func (s settings) sheet() report.Page {
 	return report.Page{
 		Width: 120, Height: 80,
 		Note: fmt.Sprintf("%s, %d fermions on %d × %d cells, V = %g", s.model, s.particles, s.lx, s.ly, s.repulsion),
 	}
 }
 
-// drawSpectrum draws energy against momentum sector.
-func drawSpectrum(s settings, sectors []sector, m manifold) error {
+// spectrum is the figure of energy against momentum sector.
+func spectrum(s settings, sectors []sector, m manifold) report.SectorSpectrum {
 	figure := report.SectorSpectrum{
-		Page:     s.page(),
+		Page:     s.sheet(),
 		Energy:   report.Axis{Unit: "V"},
 		Manifold: m.below, ShadeGap: m.below > 0,
 		Tolerance: 1e-8,
@@ -34,13 +34,13 @@ func drawSpectrum(s settings, sectors []sector, m manifold) error {
 		}
 		figure.Sectors = append(figure.Sectors, row)
 	}
-	return figure.Save(s.path("spectrum." + s.format))
+	return figure
 }
 
-// drawFlow draws energy against flux.
-func drawFlow(s settings, points []flowPoint) error {
+// spectralFlow is the figure of energy against flux.
+func spectralFlow(s settings, points []flowPoint) report.SpectralFlow {
 	figure := report.SpectralFlow{
-		Page:     s.page(),
+		Page:     s.sheet(),
 		Energy:   report.Axis{Unit: "V"},
 		FluxAxis: report.Axis{Title: "Flux through " + s.direction, Unit: "flux quanta"},
 		ShadeGap: true,
@@ -65,5 +65,5 @@ func drawFlow(s settings, points []flowPoint) error {
 			figure.Flows[at].Energies = append(figure.Flows[at].Energies, e)
 		}
 	}
-	return figure.Save(s.path("flow." + s.format))
+	return figure
 }

@@ -43,6 +43,8 @@ type settings struct {
 	out        string
 	format     string
 	json       string
+	page       string
+	plain      bool
 }
 
 func main() {
@@ -61,6 +63,8 @@ func main() {
 	flag.StringVar(&s.out, "out", "chernband-results", "folder for figures and archive")
 	flag.StringVar(&s.format, "format", "svg", "format of the figures: svg, png or pdf")
 	flag.StringVar(&s.json, "json", "", "file for the results as JSON")
+	flag.StringVar(&s.page, "page", "", "file for a page with everything on it, such as chernband.html")
+	flag.BoolVar(&s.plain, "plain", false, "leave times and versions out of the page, so that its bytes repeat")
 	flag.Parse()
 
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
@@ -108,15 +112,20 @@ func study(ctx context.Context, s settings) error {
 		}
 		bar.Close()
 		printFlow(s, flow)
-		if err := drawFlow(s, flow); err != nil {
+		if err := spectralFlow(s, flow).Save(s.path("flow." + s.format)); err != nil {
 			return err
 		}
 	}
-	if err := drawSpectrum(s, sectors, m); err != nil {
+	if err := spectrum(s, sectors, m).Save(s.path("spectrum." + s.format)); err != nil {
 		return err
 	}
 	if err := archiveStates(s, sectors, m); err != nil {
 		return err
+	}
+	if s.page != "" {
+		if err := writePage(s, sectors, m, flow); err != nil {
+			return err
+		}
 	}
 	if s.json != "" {
 		return writeJSON(s, sectors, m, flow)
