@@ -15,11 +15,33 @@
 // equal, whether a set closes and whether numbers are a representation are
 // decided without rounding.
 //
+// # Groups and representations
+//
+// [Span] lists a finite group of actions, its products, inverses and
+// conjugacy classes. [Group.Representations] lists its irreducible
+// representations, each as the one-dimensional representation of a subgroup
+// from which it is induced. A sector with these symmetries holds one state for
+// every copy of the representation, so that a level of degeneracy d is found
+// once:
+//
+//	g, err := group.Span([]group.Action{shift, mirror})
+//	all, err := g.Representations(nil)
+//	for _, r := range all {
+//		use(r.Row, r.Dimension) // sector, and how often each of its levels counts
+//	}
+//
+// [Group.Stars], [Group.LittleGroup] and [Group.Over] do the same for one
+// character of an abelian normal subgroup, such as one momentum.
+//
 // # Caveats
 //
 // The reordering sign of fermions is not part of an Action: it follows from
-// the kinds of the sites and is supplied by package basis. Only
-// one-dimensional representations are formed here.
+// the kinds of the sites and is supplied by package basis. It leaves products
+// of actions alone, so that groups, characters and rows hold for fermions too.
+//
+// A few groups have representations that no one-dimensional one induces, such
+// as the rotations of the icosahedron or all permutations of five sites; see
+// [ErrNotMonomial].
 //
 // # Arrows
 //
