@@ -32,8 +32,10 @@ type frame struct {
 	whole  bool // ticks at whole numbers only
 	yAxis  Axis
 	yRange [2]float64
-	key    func(columns) []entry
-	strip  func(columns) float64 // height kept free above the plotting area; may be nil
+	// decades says that yRange are powers of ten, and labels the ticks so.
+	decades bool
+	key     func(columns) []entry
+	strip   func(columns) float64 // height kept free above the plotting area; may be nil
 }
 
 // panel is a frame with all places fixed.
@@ -94,7 +96,12 @@ func (p *panel) divide() error {
 	if p.top-p.bottom < leastSide {
 		return fmt.Errorf("%w: %.0f mm are left for the height of the plot; %s", ErrSize, (p.top-p.bottom)/perMillimetre, useful)
 	}
-	p.y = newScale(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22, false)
+	p.y = newScale(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22, p.decades)
+	if p.decades {
+		for i, t := range p.y.ticks {
+			p.y.ticks[i].label = "10^{" + decimal(t.value, 0) + "}"
+		}
+	}
 	return nil
 }
 

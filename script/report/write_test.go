@@ -41,6 +41,15 @@ func specimens() map[string]figure {
 			Sectors: []Sector{{Levels: []float64{3, 4, 12}}, {Levels: []float64{3, 11}}}, Expected: []int{2, 2}, Below: BelowLargestGap,
 		},
 		"entropy": EntropyProfile{Curves: []EntropyCurve{{Name: "state", Sites: []int{1, 2, 3}, Entropies: []float64{0.5, 0.7, 0.5}}, {Sites: []int{2}, Entropies: []float64{1}}}},
+		"tower": Tower{Page: Page{Note: "Invented levels"}, Relative: true, Line: true, Energy: Axis{Unit: "J"}, Series: []TowerSeries{
+			{Name: "Γ A1", TwiceS: []int{0, 4, 8}, Energies: []float64{-10, -9.2, -7.4}}, {Name: "M A1", TwiceS: []int{2, 6}, Energies: []float64{-9.75, -8.5}},
+			{TwiceS: []int{0, 2}, Energies: []float64{-8.9, -8.7}}}},
+		"convergence": Convergence{Tolerance: 1e-9, Value: Axis{Unit: "J"}, Curves: []ConvergenceCurve{
+			{Name: "level 0", Steps: []float64{4, 8, 12, 16, 20}, Values: []float64{1, 0.1, 1e-4, 1e-8, 1e-10}}, {Name: "level 1", Steps: []float64{4, 8, 12, 16, 20}, Values: []float64{2, 0.7, 0.02, 1e-4, 0}}}},
+		"extrapolation": Extrapolation{Quantity: Axis{Title: "Gap", Unit: "J"}, Series: []ScalingSeries{
+			{Name: "tilted", X: []float64{0.1, 0.0625, 0.05, 0.03125}, Y: []float64{0.9, 0.62, 0.55, 0.41}, Errors: []float64{0.02, 0.03, 0.03, 0.05}, Degree: 1},
+			{Name: "bare", X: []float64{0.1, 0.05}, Y: []float64{0.5, 0.45}, Degree: 1}, {X: []float64{0.08}, Y: []float64{0.7}, Degree: -1}}},
+		"statistics": LevelStatistics{Ratios: []float64{0, 0.1, 0.2, 0.33, 0.41, 0.44, 0.52, 0.58, 0.63, 0.66, 0.7, 0.74, 0.85, 0.93, 1}, Bins: 10, Unitary: true},
 	}
 }
 
