@@ -37,6 +37,20 @@
 // displacements counts both; [Simple] merges them. A displacement that joins a
 // site to itself, or that has a shorter image on the cluster, is an error.
 //
+// # Symmetry
+//
+// [Cluster.SpaceGroup] finds all motions that carry the cluster to itself and
+// [SpaceGroup.Sectors] the irreducible representations of the group they form,
+// with momentum, name and multiplicity:
+//
+//	s, err := c.SpaceGroup(&lattice.SymmetryOptions{Extra: []lattice.Extra{{Action: inversion}}})
+//	sectors, err := s.Sectors()            // Γ A1 even, Γ A1 odd, Γ A2 even …
+//
+// Each sector holds one state for every copy of its representation, so that a
+// degenerate level appears in it once and stands for Multiplicity states. The
+// motions are those of the positions of the sites; a Hamiltonian with fewer
+// symmetries hands over its lists of bonds.
+//
 // # Signs
 //
 // A state of momentum k obeys T_a|ψ⟩ = exp(-ik·a)|ψ⟩. A boundary twist of θ
