@@ -1,6 +1,9 @@
 // Package report draws figures and prints tables from plain numbers: energy
-// against momentum sector, levels against flux, entanglement level against
-// momentum with its counting, entropy against the cut.
+// against momentum sector or total spin, levels against flux, entanglement level
+// against momentum with its counting, entropy against the cut, spectral functions
+// along a path, structure factors over the Brillouin zone, clusters with their
+// correlations, level statistics, extrapolations in the size, and the convergence of a
+// run. Each gives its numbers as a Table, too.
 //
 //	figure := report.SectorSpectrum{
 //		Sectors:  []report.Sector{{Label: "(0,0)", Levels: zero}, {Label: "(1,0)", Levels: one}},

@@ -36,6 +36,9 @@ type frame struct {
 	decades bool
 	key     func(columns) []entry
 	strip   func(columns) float64 // height kept free above the plotting area; may be nil
+	bar     *colourBar            // beside the plotting area; may be nil
+	equal   bool                  // a unit is equally long in both directions
+	marks   []tick                // ticks below, instead of those of the axis; nil for these
 }
 
 // panel is a frame with all places fixed.
@@ -66,12 +69,33 @@ func (f frame) arrange() (*panel, error) {
 		}
 		left := border + titleSize*(1+descenders) + labelGap + p.widestTick() + labelGap + tickLength
 		right := p.width - border - math.Max(2, p.overhang())
+		if p.bar != nil {
+			right = p.width - border - p.bar.room()
+		}
 		if left <= p.left && right >= p.right {
-			return p, p.checkTitles()
+			return p, p.finished()
 		}
 		p.left, p.right = math.Max(left, p.left), math.Min(right, p.right)
 	}
-	return p, p.checkTitles()
+	return p, p.finished()
+}
+
+// finished makes the units equal, if asked, and checks the titles.
+func (p *panel) finished() error {
+	if p.equal {
+		unit := math.Min((p.right-p.left)/(p.xRange[1]-p.xRange[0]), (p.top-p.bottom)/(p.yRange[1]-p.yRange[0]))
+		wide, high := unit*(p.xRange[1]-p.xRange[0]), unit*(p.yRange[1]-p.yRange[0])
+		p.left += (p.right - p.left - wide) / 2
+		p.right = p.left + wide
+		p.bottom += (p.top - p.bottom - high) / 2
+		p.top = p.bottom + high
+		p.x = numbersBelow(p.frame, p.left, p.right)
+		p.y = newScale(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22, false)
+		if p.bar != nil {
+			p.bar.place(p.bottom, p.top)
+		}
+	}
+	return p.checkTitles()
 }
 
 // divide shares the page out for the present margins at left and right.
@@ -86,6 +110,10 @@ func (p *panel) divide() error {
 		depth = p.columns.depth()
 	} else {
 		p.x = numbersBelow(p.frame, p.left, p.right)
+		if p.marks != nil {
+			p.x.ticks = p.marks
+			p.x.ticks = p.x.apart()
+		}
 	}
 	var err error
 	if p.rows, err = rowsOf(p.key(p.columns), p.width-2*border); err != nil {
@@ -97,6 +125,9 @@ func (p *panel) divide() error {
 		return fmt.Errorf("%w: %.0f mm are left for the height of the plot; %s", ErrSize, (p.top-p.bottom)/perMillimetre, useful)
 	}
 	p.y = newScale(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22, p.decades)
+	if p.bar != nil {
+		p.bar.place(p.bottom, p.top)
+	}
 	if p.decades {
 		for i, t := range p.y.ticks {
 			p.y.ticks[i].label = "10^{" + decimal(t.value, 0) + "}"

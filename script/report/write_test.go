@@ -50,6 +50,7 @@ func specimens() map[string]figure {
 			{Name: "tilted", X: []float64{0.1, 0.0625, 0.05, 0.03125}, Y: []float64{0.9, 0.62, 0.55, 0.41}, Errors: []float64{0.02, 0.03, 0.03, 0.05}, Degree: 1},
 			{Name: "bare", X: []float64{0.1, 0.05}, Y: []float64{0.5, 0.45}, Degree: 1}, {X: []float64{0.08}, Y: []float64{0.7}, Degree: -1}}},
 		"statistics": LevelStatistics{Ratios: []float64{0, 0.1, 0.2, 0.33, 0.41, 0.44, 0.52, 0.58, 0.63, 0.66, 0.7, 0.74, 0.85, 0.93, 1}, Bins: 10, Unitary: true},
+		"dispersion": invertedBand(), "structure": squareMap(), "lattice": plaquettes(),
 	}
 }
 
