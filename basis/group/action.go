@@ -2,7 +2,7 @@ package group
 
 import (
 	"fmt"
-	"strings"
+	"strconv"
 )
 
 // Action is a monomial symmetry: it sends every product state to one product
@@ -187,19 +187,26 @@ func (a Action) IsIdentity() bool {
 // Key returns a text that is the same for equal actions and only for these.
 func (a Action) Key() string {
 	a = a.tidy()
-	var b strings.Builder
-	fmt.Fprint(&b, []int(a.Sites))
+	b := make([]byte, 0, 4*len(a.Sites))
+	for _, to := range a.Sites {
+		b = strconv.AppendInt(append(b, ' '), int64(to), 10)
+	}
 	for i := range a.Sites {
 		for s := range a.levelsAt(i) {
 			if to := a.Level(i, s); to != s {
-				fmt.Fprintf(&b, "|%d:%d>%d", i, s, to)
+				b = strconv.AppendInt(append(b, '|'), int64(i), 10)
+				b = strconv.AppendInt(append(b, ':'), int64(s), 10)
+				b = strconv.AppendInt(append(b, '>'), int64(to), 10)
 			}
 			if t := a.Phase(i, s); !t.IsZero() {
-				fmt.Fprintf(&b, "|%d:%d*%v", i, s, t)
+				b = strconv.AppendInt(append(b, '|'), int64(i), 10)
+				b = strconv.AppendInt(append(b, ':'), int64(s), 10)
+				b = strconv.AppendInt(append(b, '*'), t.Num, 10)
+				b = strconv.AppendInt(append(b, '/'), t.Den, 10)
 			}
 		}
 	}
-	return b.String()
+	return string(b)
 }
 
 // Order returns the smallest n > 0 with aⁿ = 1, or an error if n would pass

@@ -50,6 +50,9 @@ func (t Turn) normal() Turn {
 		}
 		t.Num, t.Den = -t.Num, -t.Den
 	}
+	if t.Num == 0 || t.Den == 1 {
+		return Turn{0, 1}
+	}
 	t.Num %= t.Den
 	if t.Num < 0 {
 		t.Num += t.Den
@@ -70,6 +73,12 @@ func (t Turn) Add(u Turn) Turn {
 	t, u = t.normal(), u.normal()
 	if t.Den <= 0 || u.Den <= 0 {
 		return Turn{1, 0}
+	}
+	if t.Num == 0 {
+		return u
+	}
+	if u.Num == 0 {
+		return t
 	}
 	d := gcd(t.Den, u.Den)
 	return Turn{t.Num*(u.Den/d) + u.Num*(t.Den/d), t.Den / d * u.Den}.normal()
