@@ -20,6 +20,12 @@ type Sector struct {
 	Labels       []string   // of the extra symmetries
 	Multiplicity int        // |star|·d, d being the dimension over the little group
 	Symmetries   []group.Eigenvalue
+
+	// Conjugate is the place in the list of the sector with the complex
+	// conjugate representation, its own place where that is equivalent: a
+	// Hamiltonian with real elements between product states has the same levels
+	// in both. With an extra symmetry of complex phases it is its own place.
+	Conjugate int
 }
 
 // String writes the label, such as "M B1 odd".
@@ -114,15 +120,17 @@ func (s *SpaceGroup) Sectors() ([]Sector, error) {
 	stars := s.Stars()
 	names := s.Cluster.pointNames(stars)
 	var all []Sector
+	var characters [][]complex128
 	for i, star := range stars {
 		for _, turns := range extras {
-			some, err := s.over(star, names[i], turns)
+			some, rows, err := s.over(star, names[i], turns)
 			if err != nil {
 				return nil, err
 			}
-			all = append(all, some...)
+			all, characters = append(all, some...), append(characters, rows...)
 		}
 	}
+	s.pair(all, characters)
 	squares := 0
 	for _, k := range all {
 		squares += k.Multiplicity * k.Multiplicity
@@ -146,18 +154,49 @@ func (s *SpaceGroup) extraTurns() ([][]group.Turn, error) {
 	return list, err
 }
 
+// pair finds complex conjugate representations by their characters.
+func (s *SpaceGroup) pair(all []Sector, characters [][]complex128) {
+	for i := range all {
+		all[i].Conjugate = i
+	}
+	for _, e := range s.options.Extra {
+		for _, list := range e.Action.Phases {
+			for _, t := range list {
+				if !t.IsReal() {
+					return
+				}
+			}
+		}
+	}
+	for i := range all {
+		if all[i].Conjugate != i {
+			continue
+		}
+		conjugate := make([]complex128, len(characters[i]))
+		for c, v := range characters[i] {
+			conjugate[c] = cmplx.Conj(v)
+		}
+		for j := i; j < len(all); j++ {
+			if all[j].Multiplicity == all[i].Multiplicity && real(s.Group.InnerProduct(characters[j], conjugate)) > 0.5 {
+				all[i].Conjugate, all[j].Conjugate = j, i
+				break
+			}
+		}
+	}
+}
+
 // over returns the sectors of one star with given eigenvalues of the extra
-// symmetries.
-func (s *SpaceGroup) over(star []Momentum, point string, extras []group.Turn) ([]Sector, error) {
+// symmetries, and the characters of their representations.
+func (s *SpaceGroup) over(star []Momentum, point string, extras []group.Turn) ([]Sector, [][]complex128, error) {
 	normal := append(append([]int(nil), s.Translations...), s.Extras...)
 	turns := append(s.turns(star[0]), extras...)
 	all, err := s.Group.Over(normal, turns)
 	if err != nil {
-		return nil, fmt.Errorf("lattice: the momentum %v: %w", star[0], err)
+		return nil, nil, fmt.Errorf("lattice: the momentum %v: %w", star[0], err)
 	}
 	labels := s.labels(extras)
 	names, order := s.irreps(star[0], all)
-	list := make([]Sector, len(all))
+	list, characters := make([]Sector, len(all)), make([][]complex128, len(all))
 	for i, r := range all {
 		k := Sector{Momentum: star[0], Star: star, Point: point, Irrep: names[i], Labels: labels, Multiplicity: r.Dimension}
 		for _, e := range r.Row {
@@ -165,9 +204,9 @@ func (s *SpaceGroup) over(star []Momentum, point string, extras []group.Turn) ([
 				k.Symmetries = append(k.Symmetries, e)
 			}
 		}
-		list[order[i]] = k
+		list[order[i]], characters[order[i]] = k, r.Characters()
 	}
-	return list, nil
+	return list, characters, nil
 }
 
 // labels returns the labels of the extra symmetries.

@@ -9,6 +9,7 @@ import (
 	"sort"
 	"strings"
 	"testing"
+	"time"
 
 	"ketloom/basis"
 	"ketloom/basis/group"
@@ -239,18 +240,27 @@ func levels(t *testing.T, op operator.Operator, space *basis.Space, sector basis
 		t.Fatal(err)
 	}
 	a := must(matrix.New(context.Background(), op, b, nil))(t).Dense()
-	real0 := make([]float64, len(a))
-	for i, z := range a {
-		real0[i] = real(z)
-		if imag(z) != 0 {
-			values, _, err := dense.EigenComplex(a, b.Len(), false)
-			if err != nil {
-				t.Fatal(err)
+	n, complexes := b.Len(), false
+	reals := make([]float64, len(a))
+	for i := range n {
+		for j := range i + 1 {
+			x, y := a[i*n+j], cmplx.Conj(a[j*n+i])
+			if cmplx.Abs(x-y) > 1e-12 {
+				t.Fatalf("element (%d, %d) is %v, its adjoint %v", i, j, x, y)
 			}
-			return values
+			a[i*n+j], a[j*n+i] = (x+y)/2, cmplx.Conj(x+y)/2 // without the rounding
+			reals[i*n+j], reals[j*n+i] = real(x+y)/2, real(x+y)/2
+			complexes = complexes || imag(x) != 0
 		}
 	}
-	values, _, err := dense.EigenReal(real0, b.Len(), false)
+	if complexes {
+		values, _, err := dense.EigenComplex(a, n, false)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return values
+	}
+	values, _, err := dense.EigenReal(reals, n, false)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -574,6 +584,77 @@ func TestRotationsAloneKeepAHandedness(t *testing.T) {
 	}
 }
 
+// Fermions on the honeycomb lattice with phases ±φ of the second neighbours
+// (F. D. M. Haldane, Phys. Rev. Lett. 61, 2015, 1988): rotations stay
+// symmetries, reflections do not.
+func TestHandedHamiltonian(t *testing.T) {
+	c := must(lattice.Torus(lattice.Honeycomb(), 3, 3))(t)
+	space := must(basis.Uniform(18, basis.Fermion()))(t)
+	far := must(c.Bonds(2))(t)
+	phases := make([]complex128, len(far))
+	for i, b := range far {
+		_, orbital := c.CellOf(b.From)
+		sign := 1.0
+		if (b.Cells == [2]int{0, 1}) != (orbital == 1) {
+			sign = -1
+		}
+		phases[i] = cmplx.Exp(complex(0, sign*0.9))
+	}
+	op := must(model.TV(space, c, []float64{1}, []float64{2}, nil))(t).Plus(must(model.Hops(space, far, 0.3, phases))(t))
+	sector := basis.Sector{Charges: []basis.ChargeValue{space.ParticleNumber().Is(2)}}
+	list := must(must(c.SpaceGroup(&lattice.SymmetryOptions{NoReflections: true}))(t).Sectors())(t)
+	checkSpectrum(t, c.String(), op, space, sector, list)
+	for _, k := range must(must(c.SpaceGroup(nil))(t).Sectors())(t) {
+		if k.String() != "Γ A1" {
+			continue
+		}
+		sector.Symmetries = k.Symmetries
+		b := must(basis.New(context.Background(), space, sector, nil))(t)
+		if _, err := matrix.New(context.Background(), op, b, nil); err == nil {
+			t.Error("reflections were taken for symmetries")
+		}
+	}
+}
+
+func TestConjugateSectorsHaveTheSameLevels(t *testing.T) {
+	for _, c := range []*lattice.Cluster{must(lattice.Torus(lattice.Triangular(), 3, 3))(t), must(lattice.New(lattice.Square(), [2]int{3, 1}, [2]int{-1, 3}))(t), must(lattice.Ring(9))(t)} {
+		space := must(basis.Uniform(c.Sites(), basis.Fermion()))(t)
+		op := must(model.TV(space, c, []float64{1}, []float64{0.7}, nil))(t)
+		for _, opts := range []*lattice.SymmetryOptions{{NoReflections: true}, {OnlyTranslations: true}, {}} {
+			list := must(must(c.SpaceGroup(opts))(t).Sectors())(t)
+			pairs := 0
+			sector := basis.Sector{Charges: []basis.ChargeValue{space.ParticleNumber().Is(4)}}
+			for i, k := range list {
+				if list[k.Conjugate].Conjugate != i {
+					t.Fatalf("%v: %v and %v", c, k, list[k.Conjugate])
+				}
+				if k.Conjugate == i {
+					continue
+				}
+				pairs++
+				sector.Symmetries = k.Symmetries
+				mine := levels(t, op, space, sector)
+				sector.Symmetries = list[k.Conjugate].Symmetries
+				other := levels(t, op, space, sector)
+				if len(mine) != len(other) {
+					t.Fatalf("%v: %v and %v have %d and %d levels", c, k, list[k.Conjugate], len(mine), len(other))
+				}
+				for j := range mine {
+					if math.Abs(mine[j]-other[j]) > 1e-9 {
+						t.Errorf("%v: level %d of %v and %v: %v, %v", c, j, k, list[k.Conjugate], mine[j], other[j])
+					}
+				}
+			}
+			if !opts.NoReflections && !opts.OnlyTranslations && c.Orbitals() == 1 && c.Sites() == 9 && pairs > 0 {
+				t.Errorf("%v: with reflections all representations are real, but there are %d pairs", c, pairs)
+			}
+			if opts.OnlyTranslations && pairs == 0 {
+				t.Errorf("%v: no pairs of opposite momenta", c)
+			}
+		}
+	}
+}
+
 // Magnetic translations of two fermions in a flux of a third a cell.
 func TestMagneticTranslationsGiveTheSpectrum(t *testing.T) {
 	c := must(lattice.Torus(lattice.Square(), 3, 3))(t)
@@ -634,6 +715,10 @@ func TestWrongSymmetriesAreRefused(t *testing.T) {
 		if _, err := c.SpaceGroup(&w.opts); err == nil || !strings.Contains(err.Error(), w.says) {
 			t.Errorf("%s: error %v, want one that says %q", name, err, w.says)
 		}
+	}
+	long := must(lattice.Ring(1 << 15))(t)
+	if _, err := long.SpaceGroup(nil); err == nil || !strings.Contains(err.Error(), "take a smaller cluster") {
+		t.Errorf("a long ring: %v", err)
 	}
 	open := must(lattice.Open(lattice.Square(), 3, 3))(t)
 	turn := must(open.Rotation([2]float64{1, 1}, 4))(t)
@@ -725,6 +810,38 @@ func distance(c *lattice.Cluster, a, b [2]float64) float64 {
 		}
 	}
 	return best
+}
+
+// The time for the group and all sectors of 36 sites, in units of that for the
+// group alone by its generators.
+func BenchmarkSectors36(b *testing.B) {
+	c, err := lattice.Torus(lattice.Triangular(), 6, 6)
+	if err != nil {
+		b.Fatal(err)
+	}
+	var generators []group.Action
+	var span, all time.Duration
+	for range b.N {
+		start := time.Now()
+		s, err := c.SpaceGroup(&lattice.SymmetryOptions{Extra: []lattice.Extra{inversion(36)}})
+		if err != nil {
+			b.Fatal(err)
+		}
+		if _, err := s.Sectors(); err != nil {
+			b.Fatal(err)
+		}
+		all += time.Since(start)
+		generators = generators[:0]
+		for _, i := range s.Group.Generators() {
+			generators = append(generators, s.Group.At(i))
+		}
+		start = time.Now()
+		if _, err := group.Span(generators); err != nil {
+			b.Fatal(err)
+		}
+		span += time.Since(start)
+	}
+	b.ReportMetric(float64(all)/float64(span), "spans")
 }
 
 func ExampleSpaceGroup_Sectors() {

@@ -10,7 +10,8 @@ import (
 // SymmetryOptions says which symmetries of a cluster are wanted. Nil and the
 // zero value mean all isometries that carry sites to sites.
 type SymmetryOptions struct {
-	// OnlyTranslations leaves out everything but the lattice translations.
+	// OnlyTranslations leaves out everything but the lattice translations, for
+	// a Hamiltonian with a boundary twist that is spread over its bonds.
 	OnlyTranslations bool
 	// NoReflections leaves out reflections and glides, for a Hamiltonian with
 	// a handedness (a flux, a scalar chirality).
@@ -78,6 +79,9 @@ type place struct {
 // doubled cell) has translations by parts of a cell too, unless Kinds or Bonds
 // exclude them; they count as operations, not as translations.
 //
+// Positions agree if they differ by less than 1e-6 of A1: write √3/2 as such,
+// not as 0.866, or the symmetries that rest on it are not found.
+//
 // Errors: kinds or bonds that do not fit the cluster, bonds that a lattice
 // translation does not keep, an extra symmetry that does not commute with a
 // motion or another extra one, more than group.LargestOrder elements.
@@ -103,6 +107,9 @@ func (c *Cluster) SpaceGroup(opts *SymmetryOptions) (*SpaceGroup, error) {
 		d++
 	}
 	motions, images := s.wanted(keep)
+	if err := s.checkSize(len(motions)); err != nil {
+		return nil, err
+	}
 	if err := s.span(generators, images); err != nil {
 		return nil, err
 	}
@@ -116,6 +123,18 @@ func (c *Cluster) SpaceGroup(opts *SymmetryOptions) (*SpaceGroup, error) {
 	s.locate()
 	s.Origin = s.origin()
 	return s, nil
+}
+
+// mostImages bounds the number of sites times that of symmetries.
+const mostImages = 1 << 24
+
+// checkSize refuses groups that would take long to list.
+func (s *SpaceGroup) checkSize(operations int) error {
+	l1, l2 := s.Cluster.lengths()
+	if order := l1 * l2 * operations; order > group.LargestOrder || order*s.Cluster.Sites() > mostImages {
+		return fmt.Errorf("lattice: %d symmetries of %d sites (%v); up to %d symmetries and %d images of sites are listed, so take a smaller cluster or leave symmetries out", order, s.Cluster.Sites(), s.Cluster, group.LargestOrder, mostImages)
+	}
+	return nil
 }
 
 // wanted returns the motions that the options ask for.
