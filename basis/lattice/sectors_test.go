@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"math/cmplx"
+	"math/rand/v2"
 	"sort"
 	"strings"
 	"testing"
@@ -198,6 +199,49 @@ func TestSectorsAddUpToTheWholeSpace(t *testing.T) {
 				if err != nil || int64(b.Len()) != dims[i] {
 					t.Errorf("%v, %s, %v: %v, %d states wanted", c, what, k, err, dims[i])
 				}
+			}
+		}
+	}
+}
+
+func TestSectorsOfRandomTori(t *testing.T) {
+	skew := lattice.Lattice{Name: "skew square", Dimension: 2, A1: [2]float64{1, 0}, A2: [2]float64{1, 1}, Sites: [][2]float64{{0.3, 0.1}}}
+	flat := lattice.Lattice{Name: "rectangular", Dimension: 2, A1: [2]float64{1, 0}, A2: [2]float64{0, 1.3}, Sites: [][2]float64{{0, 0}}}
+	centred := lattice.Lattice{Name: "centred", Dimension: 2, A1: [2]float64{1, 0.4}, A2: [2]float64{1, -0.4}, Sites: [][2]float64{{0, 0}}}
+	glide := lattice.Lattice{Name: "glide", Dimension: 2, A1: [2]float64{1, 0}, A2: [2]float64{0, 1.7}, Sites: [][2]float64{{0.25, 0.2}, {0.75, -0.2}}}
+	lattices := []lattice.Lattice{lattice.Square(), lattice.Triangular(), lattice.Honeycomb(), lattice.Kagome(), lattice.Checkerboard(), shastrySutherland(), skew, flat, centred, glide}
+	r := rand.New(rand.NewPCG(11, 12))
+	for done := 0; done < 120; {
+		l := lattices[r.IntN(len(lattices))]
+		c, err := lattice.New(l, [2]int{r.IntN(7) - 3, r.IntN(7) - 3}, [2]int{r.IntN(7) - 3, r.IntN(7) - 3})
+		if err != nil || c.Sites() > 12 || c.Sites() < 2 {
+			continue
+		}
+		done++
+		n := c.Sites()
+		space := must(basis.Uniform(n, basis.Fermion()))(t)
+		charges := []basis.ChargeValue{space.ParticleNumber().Is(n / 2)}
+		s := must(c.SpaceGroup(nil))(t)
+		list := must(s.Sectors())(t)
+		sectors, multiplicities := parts(list, charges)
+		if _, err := basis.Whole(space, basis.Sector{Charges: charges}, sectors, multiplicities); err != nil {
+			t.Errorf("%v: %v", c, err)
+		}
+		stars := 0
+		for _, star := range s.Stars() {
+			stars += len(star)
+		}
+		if stars != c.Cells() {
+			t.Errorf("%v: %d momenta in the stars", c, stars)
+		}
+		labels := map[string]bool{}
+		for _, k := range list {
+			if labels[k.String()] {
+				t.Errorf("%v: two sectors %v", c, k)
+			}
+			labels[k.String()] = true
+			if strings.Contains(k.Irrep, "Γ") && len(l.Sites) == 1 {
+				t.Errorf("%v: %v has no name in a lattice of one site a cell", c, k)
 			}
 		}
 	}
