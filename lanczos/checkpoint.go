@@ -50,6 +50,7 @@ type state struct {
 	Energies   []float64 `json:"energies"` // of the found vectors
 	Residuals  []float64 `json:"residuals"`
 	Check      Check     `json:"check"`
+	Cut        bool      `json:"cut"` // the list ends within a multiplet
 }
 
 const checkpointFormat = "ketloom checkpoint 1"

@@ -36,7 +36,7 @@ func (o *stopping) ApplyComplex(dst, src []complex128) {
 }
 
 func sameResult(a, b *Result) bool {
-	same := slices.Equal(a.Levels, b.Levels) && a.Products == b.Products && a.Check == b.Check && len(a.Vectors) == len(b.Vectors)
+	same := slices.Equal(a.Levels, b.Levels) && a.Products == b.Products && a.Check == b.Check && a.CutMultiplet == b.CutMultiplet && len(a.Vectors) == len(b.Vectors)
 	for j := range a.Vectors {
 		same = same && slices.Equal(a.Vectors[j].Real, b.Vectors[j].Real) && slices.Equal(a.Vectors[j].Complex, b.Vectors[j].Complex)
 	}
@@ -89,6 +89,54 @@ func TestResumedSearchesHaveTheSameBits(t *testing.T) {
 				t.Errorf("not stopped at all")
 			}
 		}
+	}
+}
+
+// The same from a stop at every place of a search.
+func TestStopsAtEveryProduct(t *testing.T) {
+	op := scrambled(400, false)
+	opts := Options{Krylov: 9}
+	whole, err := Lowest(context.Background(), op, 2, &opts)
+	if err != nil {
+		t.Fatal(err)
+	}
+	path := filepath.Join(t.TempDir(), "state")
+	for at := 1; at < whole.Products; at++ {
+		os.Remove(path)
+		ctx, cancel := context.WithCancel(context.Background())
+		stopped := opts
+		stopped.Checkpoint = func(c *Checkpoint) error { return c.Save(path) }
+		// A stop is noticed before a product or between two restarts.
+		if at%2 == 0 {
+			stopped.CheckpointEvery = 1
+		}
+		_, err := Lowest(ctx, &stopping{op, at, cancel}, 2, &stopped)
+		cancel()
+		if err == nil {
+			continue // the last products compute residuals
+		}
+		if !errors.Is(err, context.Canceled) {
+			t.Fatal(err)
+		}
+		resumed := opts
+		if resumed.Resume, err = LoadCheckpoint(path); err != nil {
+			t.Fatal(err)
+		}
+		result, err := Lowest(context.Background(), op, 2, &resumed)
+		if err != nil || !sameResult(whole, result) {
+			t.Fatalf("stopped at product %d: %v, %v\nnever stopped: %v", at, err, result, whole)
+		}
+	}
+}
+
+// A hook may end the context itself.
+func TestStopInTheHook(t *testing.T) {
+	op := scrambled(400, false)
+	ctx, cancel := context.WithCancel(context.Background())
+	defer cancel()
+	r, err := Lowest(ctx, op, 2, &Options{Krylov: 9, CheckpointEvery: 1, Checkpoint: func(*Checkpoint) error { cancel(); return nil }})
+	if !errors.Is(err, context.Canceled) || r == nil {
+		t.Errorf("%v, %v", r, err)
 	}
 }
 

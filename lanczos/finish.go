@@ -15,9 +15,15 @@ const RoundingFloor = 32 * epsilon
 func (s *search[T]) finish(products bool, cause error, reason string) (*Result, error) {
 	list := s.found[:min(s.k, len(s.found))]
 	if products {
+		if cause == nil {
+			s.before = &beginning{s.spent, s.check, s.size}
+		}
 		if err := s.rayleighRitz(list); err != nil {
 			if ctxErr := s.ctx.Err(); ctxErr != nil {
 				cause, reason = ctxErr, ctxErr.Error()
+				if err := s.checkpoint(true); err != nil {
+					return nil, err
+				}
 			} else {
 				return nil, err
 			}

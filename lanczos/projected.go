@@ -50,8 +50,10 @@ func (p *projected) solve() error {
 	for i := range n {
 		a[i*n+i] = p.alpha[i]
 	}
-	for i := range p.kept {
-		a[p.kept*n+i] = p.arrow[i]
+	if p.kept < n { // else nothing has been added since the space was condensed
+		for i := range p.kept {
+			a[p.kept*n+i] = p.arrow[i]
+		}
 	}
 	for i := p.kept; i+1 < n; i++ {
 		a[(i+1)*n+i] = p.beta[i]

@@ -29,7 +29,7 @@ func (s *search[T]) snapshot() *Checkpoint {
 		Format: checkpointFormat, Dim: s.dim, Levels: s.k, Krylov: s.Krylov, Complex: isComplex, Tolerance: s.Tolerance,
 		MissChance: s.MissChance, Seed: s.Seed, Unchecked: s.Unchecked, Products: at.spent.products, Restarts: at.spent.restarts,
 		Starts: at.spent.starts, Norm: at.size, Size: size, Kept: min(m.kept, size), Judged: min(s.judged, size),
-		Alpha: m.alpha[:size], Beta: m.beta[:size], Arrow: m.arrow[:size], Check: at.check,
+		Alpha: m.alpha[:size], Beta: m.beta[:size], Arrow: m.arrow[:size], Check: at.check, Cut: s.cut,
 	}}
 	if size > 0 {
 		for _, v := range s.basis[:size+1] {
@@ -52,7 +52,7 @@ func (s *search[T]) resume() error {
 	}
 	st, m := &c.state, s.matrix
 	s.spent.products, s.spent.restarts, s.spent.starts = st.Products, st.Restarts, st.Starts
-	s.size, s.check, s.judged = st.Norm, st.Check, st.Judged
+	s.size, s.check, s.cut, s.judged = st.Norm, st.Check, st.Cut, st.Judged
 	vectors := c.vectors
 	if st.Size > 0 {
 		for i, v := range vectors[:st.Size+1] {
