@@ -75,7 +75,10 @@ func (s *symmetry) fold(list []Configuration, found []folded) {
 			found[i].reach(w, entries[w>>s.cut], j)
 		}
 	}
-	s.settle(found, func(i int) bool { return uint64(list[i])&s.outside == 0 })
+	s.settle(found)
+	for i, c := range list {
+		found[i].again = found[i].again || uint64(c)&s.outside != 0
+	}
 }
 
 // reach takes the word under coset j if its pattern is smaller.
@@ -88,11 +91,11 @@ func (f *folded) reach(w uint64, entry uint32, j int) {
 }
 
 // settle finds the lower bits once the smallest patterns are known.
-func (s *symmetry) settle(found []folded, inside func(i int) bool) {
+func (s *symmetry) settle(found []folded) {
 	for i := range found {
 		f := &found[i]
 		f.path[1] = viaOf(f.entry)
-		if classOf(f.entry) == noClass || s.outside != 0 && !inside(i) {
+		if classOf(f.entry) == noClass {
 			f.again = true
 			continue
 		}

@@ -5,7 +5,7 @@ package basis
 type Hops struct {
 	basis *Basis
 	flips []Configuration
-	moved [][]uint64 // by coset, hop: the bits of words that the hop flips; nil where that depends on the word
+	moved [][]uint64 // by coset, hop: the bits of words that the hop flips; nil where that depends on the word or is beyond the space
 }
 
 // Hops prepares the given flips. Cost: one image for each flip and coset.
@@ -14,11 +14,16 @@ func (b *Basis) Hops(flips []Configuration) *Hops {
 	if b.sym == nil || !b.sym.straight {
 		return h
 	}
+	for _, f := range flips {
+		if uint64(f)&b.sym.outside != 0 {
+			return h
+		}
+	}
 	h.moved = make([][]uint64, b.sym.cosets)
 	for j := range h.moved {
 		still := b.sym.enter.image(j, 0)
 		for _, f := range flips {
-			h.moved[j] = append(h.moved[j], b.sym.enter.image(j, uint64(f)&^b.sym.outside)^still)
+			h.moved[j] = append(h.moved[j], b.sym.enter.image(j, uint64(f))^still)
 		}
 	}
 	return h
@@ -32,7 +37,7 @@ func (h *Hops) LocateAll(c Configuration, which []int, batch *Batch) {
 	for _, k := range which {
 		batch.Configurations = append(batch.Configurations, c^h.flips[k])
 	}
-	if h.moved == nil {
+	if h.moved == nil || uint64(c)&h.basis.sym.outside != 0 {
 		h.basis.LocateAll(batch)
 		return
 	}
@@ -45,17 +50,17 @@ func (h *Hops) LocateAll(c Configuration, which []int, batch *Batch) {
 func (h *Hops) fold(c uint64, which []int, found []folded) {
 	s := h.basis.sym
 	entries := s.patterns.entries
-	w := s.enter.image(0, c&^s.outside)
+	w := s.enter.image(0, c)
 	for i, k := range which {
 		hop := w ^ h.moved[0][k]
 		found[i] = folded{word: hop, entry: entries[hop>>s.cut]}
 	}
 	for j := 1; j < s.cosets; j++ {
-		w, moved := s.enter.image(j, c&^s.outside), h.moved[j]
+		w, moved := s.enter.image(j, c), h.moved[j]
 		for i, k := range which {
 			hop := w ^ moved[k]
 			found[i].reach(hop, entries[hop>>s.cut], j)
 		}
 	}
-	s.settle(found, func(i int) bool { return (c^uint64(h.flips[which[i]]))&s.outside == 0 })
+	s.settle(found)
 }

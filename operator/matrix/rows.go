@@ -29,9 +29,11 @@ type rows struct {
 
 // scratch is the working memory of one goroutine, and the row that it computed.
 type scratch struct {
-	columns []int
+	columns []int        // of the row; shared with one of the lists below
 	values  []complex128 // without the norms
 
+	own   []int // room for columns and values that are not those of the batch
+	pure  []complex128
 	batch basis.Batch
 	which []int        // hops that the configuration allows
 	made  []complex128 // amplitude of each
@@ -48,16 +50,27 @@ const placeBits = 24
 // diagonal element may have further parts among the others.
 func (r *rows) row(i int, s *scratch) (diagonal complex128) {
 	diagonal = r.raw(i, s)
-	s.columns, s.values = s.columns[:0], s.values[:0]
-	if r.merge {
-		return diagonal + s.merge(i, r.to == r.from)
-	}
-	for n, column := range s.batch.States {
-		if column >= 0 {
-			s.columns, s.values = append(s.columns, column), append(s.values, s.made[n])
-		}
+	switch {
+	case r.merge:
+		diagonal += s.merge(i, r.to == r.from)
+		s.columns, s.values = s.own, s.pure
+	case slices.Contains(s.batch.States, -1):
+		s.drop()
+		s.columns, s.values = s.own, s.pure
+	default:
+		s.columns, s.values = s.batch.States, s.made
 	}
 	return diagonal
+}
+
+// drop leaves out what is in no state.
+func (s *scratch) drop() {
+	s.own, s.pure = s.own[:0], s.pure[:0]
+	for n, column := range s.batch.States {
+		if column >= 0 {
+			s.own, s.pure = append(s.own, column), append(s.pure, s.made[n])
+		}
+	}
 }
 
 // raw fills the scratch with the elements of row i as the kernels make them:
@@ -108,7 +121,7 @@ func (r *rows) raw(i int, s *scratch) (diagonal complex128) {
 // the order in which they were made. Zeros are dropped. What falls on the
 // diagonal of a square matrix is returned instead.
 func (s *scratch) merge(i int, square bool) (diagonal complex128) {
-	s.order = s.order[:0]
+	s.order, s.own, s.pure = s.order[:0], s.own[:0], s.pure[:0]
 	for place, column := range s.batch.States {
 		if column >= 0 {
 			s.order = append(s.order, uint64(column)<<placeBits|uint64(place))
@@ -125,7 +138,7 @@ func (s *scratch) merge(i int, square bool) (diagonal complex128) {
 		case square && column == i:
 			diagonal = value
 		default:
-			s.columns, s.values = append(s.columns, column), append(s.values, value)
+			s.own, s.pure = append(s.own, column), append(s.pure, value)
 		}
 	}
 	return diagonal
