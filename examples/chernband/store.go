@@ -2,6 +2,7 @@ package main
 
 import (
 	"fmt"
+	"time"
 
 	"ketloom/lanczos/archive"
 )
@@ -12,6 +13,12 @@ func archiveStates(s settings, sectors []sector, m manifold) error {
 	w, err := archive.Create(path)
 	if err != nil {
 		return err
+	}
+	if s.plain {
+		if err := w.SetCreated(time.Unix(0, 0)); err != nil {
+			w.Discard()
+			return err
+		}
 	}
 	if err := fillArchive(w, s, sectors, m); err != nil {
 		w.Discard()

@@ -58,7 +58,7 @@ func main() {
 	flag.StringVar(&s.format, "format", "svg", "format of the figures: svg, png or pdf")
 	flag.StringVar(&s.json, "json", "", "file for the results as JSON")
 	flag.StringVar(&s.page, "page", "", "file for a page with everything on it, such as tower.html")
-	flag.BoolVar(&s.plain, "plain", false, "leave times and versions out of the page, so that its bytes repeat")
+	flag.BoolVar(&s.plain, "plain", false, "write the page without times and versions and date the archive 1970, so that their bytes repeat")
 	flag.Parse()
 
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)

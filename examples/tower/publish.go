@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"os"
+	"time"
 
 	"ketloom/basis/lattice"
 	"ketloom/lanczos/archive"
@@ -130,6 +131,12 @@ func archiveGround(s settings, m *magnet, ground *sector) error {
 	w, err := archive.Create(s.path("ground.ket"))
 	if err != nil {
 		return err
+	}
+	if s.plain {
+		if err := w.SetCreated(time.Unix(0, 0)); err != nil {
+			w.Discard()
+			return err
+		}
 	}
 	lowest := *ground.result
 	lowest.Levels, lowest.Vectors = lowest.Levels[:1], lowest.Vectors[:1]
