@@ -14,9 +14,9 @@ func (s *store) sumReal(dst, src []float64, first, last int) {
 	case s.uniform:
 		s.sumUniform(dst, src, first, last)
 	case s.narrow != nil:
-		s.sumNarrow(dst, src, first, last)
+		sumCoded(s, s.narrow, dst, src, first, last)
 	case s.codes != nil:
-		s.sumCoded(dst, src, first, last)
+		sumCoded(s, s.codes, dst, src, first, last)
 	default:
 		s.sumPlain(dst, src, first, last)
 	}
@@ -54,31 +54,12 @@ func (s *store) sumUniform(dst, src []float64, first, last int) {
 	}
 }
 
-func (s *store) sumNarrow(dst, src []float64, first, last int) {
-	var table [mostNarrow]float64
-	copy(table[:], s.realTable)
-	for i := first; i < last; i++ {
-		from, to := s.start[i], s.start[i+1]
-		columns, codes := s.columns[from:to], s.narrow[from:to]
-		codes = codes[:len(columns)]
-		a, b := 0.0, 0.0
-		n := 0
-		for ; n+1 < len(columns); n += 2 {
-			a += table[codes[n]] * src[columns[n]]
-			b += table[codes[n+1]] * src[columns[n+1]]
-		}
-		if n < len(columns) {
-			a += table[codes[n]] * src[columns[n]]
-		}
-		dst[i] = a + b
-	}
-}
-
-func (s *store) sumCoded(dst, src []float64, first, last int) {
+// sumCoded looks the values up in a table.
+func sumCoded[C uint8 | uint16](s *store, codes []C, dst, src []float64, first, last int) {
 	table := s.realTable
 	for i := first; i < last; i++ {
 		from, to := s.start[i], s.start[i+1]
-		columns, codes := s.columns[from:to], s.codes[from:to]
+		columns, codes := s.columns[from:to], codes[from:to]
 		codes = codes[:len(columns)]
 		a, b := 0.0, 0.0
 		n := 0
@@ -130,9 +111,9 @@ func (s *store) sumComplex(dst, src []complex128, first, last int) {
 	case s.wide != nil || s.uniform:
 		s.sumWideComplex(dst, src, first, last)
 	case s.narrow != nil:
-		s.sumNarrowComplex(dst, src, first, last)
+		sumCodedComplex(s, s.narrow, dst, src, first, last)
 	case s.codes != nil:
-		s.sumCodedComplex(dst, src, first, last)
+		sumCodedComplex(s, s.codes, dst, src, first, last)
 	default:
 		s.sumPlainComplex(dst, src, first, last)
 	}
@@ -152,30 +133,12 @@ func (s *store) sumWideComplex(dst, src []complex128, first, last int) {
 	}
 }
 
-func (s *store) sumNarrowComplex(dst, src []complex128, first, last int) {
-	var table [mostNarrow]complex128
-	copy(table[:], s.table)
-	for i := first; i < last; i++ {
-		from, to := s.start[i], s.start[i+1]
-		columns, codes := s.columns[from:to], s.narrow[from:to]
-		codes = codes[:len(columns)]
-		var re, im, re2, im2 float64
-		for n, column := range columns {
-			v, x := table[codes[n]], src[column]
-			re += real(v) * real(x)
-			re2 += imag(v) * imag(x)
-			im += real(v) * imag(x)
-			im2 += imag(v) * real(x)
-		}
-		dst[i] = complex(re-re2, im+im2)
-	}
-}
-
-func (s *store) sumCodedComplex(dst, src []complex128, first, last int) {
+// sumCodedComplex looks the values up in a table.
+func sumCodedComplex[C uint8 | uint16](s *store, codes []C, dst, src []complex128, first, last int) {
 	table := s.table
 	for i := first; i < last; i++ {
 		from, to := s.start[i], s.start[i+1]
-		columns, codes := s.columns[from:to], s.codes[from:to]
+		columns, codes := s.columns[from:to], codes[from:to]
 		codes = codes[:len(columns)]
 		var re, im, re2, im2 float64
 		for n, column := range columns {
