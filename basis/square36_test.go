@@ -81,6 +81,7 @@ func BenchmarkSquare36(b *testing.B) {
 		spent := locating(made, list[:distinct])
 		b.ReportMetric(spent, fmt.Sprintf("ns/locate-among-%d", distinct))
 		b.ReportMetric(spent/reading(), fmt.Sprintf("times-limit/locate-among-%d", distinct))
+		b.ReportMetric(hopping(made, list[:distinct]), fmt.Sprintf("ns/hop-among-%d", distinct))
 	}
 }
 
@@ -115,6 +116,33 @@ func reading() float64 {
 		sink += sum
 	}
 	return float64(time.Since(begun).Nanoseconds()) / rounds
+}
+
+// hopping returns the nanoseconds a configuration of locating all that exchanges of
+// neighbours make of the given ones, as products do.
+func hopping(made *basis.Basis, list []basis.Configuration) float64 {
+	var flips []basis.Configuration
+	for k := range 35 {
+		flips = append(flips, 3<<k)
+	}
+	hops := made.Hops(flips)
+	batch := &basis.Batch{}
+	var which []int
+	located := 0
+	begun := time.Now()
+	for range 1 << 20 / len(list) {
+		for _, c := range list {
+			which = which[:0]
+			for k := range 35 {
+				if c>>k&1 != c>>(k+1)&1 {
+					which = append(which, k)
+				}
+			}
+			hops.LocateAll(c, which, batch)
+			located += len(which)
+		}
+	}
+	return float64(time.Since(begun).Nanoseconds()) / float64(located)
 }
 
 // locating returns the nanoseconds a configuration that LocateAll takes.
