@@ -15,14 +15,14 @@ type ConvergenceCurve struct {
 	Name string
 	// Steps are numbers of products or iterations, ascending.
 	Steps []float64
-	// Values, one for each step, 0 or more. Zeros cannot be drawn on the logarithmic
-	// axis; they are counted in the key.
+	// Values, one for each step, 0 or more. The logarithmic axis does not reach 0: zeros
+	// stand at its lower end, and the key says so.
 	Values []float64
 }
 
 // Convergence draws residuals, changes or errors of a run on a logarithmic axis against
-// its steps, with a line at the tolerance and a ring where each curve falls below it for
-// good.
+// its steps, with a line at the tolerance and a ring at the first point from which on each
+// curve is within it. A line joins all points; marks are thinned until they are apart.
 type Convergence struct {
 	Page   Page
 	Curves []ConvergenceCurve
@@ -92,19 +92,8 @@ func (f Convergence) plan() (*panel, func(), error) {
 		return nil, nil, err
 	}
 	f.Value, f.Step = f.Value.or("Residual"), f.Step.or("Products")
-	x, y, hidden := [2]float64{math.Inf(1), math.Inf(-1)}, [2]float64{math.Inf(1), math.Inf(-1)}, 0
-	for _, c := range f.Curves {
-		for i, v := range c.Values {
-			if !f.drawn(c.Steps[i], v) {
-				hidden++
-			}
-			if v > 0 {
-				x = [2]float64{math.Min(x[0], c.Steps[i]), math.Max(x[1], c.Steps[i])}
-				y = [2]float64{math.Min(y[0], math.Log10(v)), math.Max(y[1], math.Log10(v))}
-			}
-		}
-	}
-	if x[0] > x[1] {
+	x, y, any := f.extent()
+	if !any {
 		return nil, nil, fmt.Errorf("%w: no value above 0 to draw; give at least one", ErrData)
 	}
 	if f.Tolerance > 0 {
@@ -120,7 +109,7 @@ func (f Convergence) plan() (*panel, func(), error) {
 	p, err := frame{
 		page: f.Page.filled(), name: "Convergence of a run",
 		xAxis: f.Step, xRange: [2]float64{xLo, xHi}, yAxis: axis, yRange: y, decades: true,
-		key: func(columns) []entry { return f.key(hidden) },
+		key: func(columns) []entry { return f.key() },
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
@@ -128,13 +117,40 @@ func (f Convergence) plan() (*panel, func(), error) {
 	return p, func() { f.paint(p) }, nil
 }
 
-// drawn reports whether a point is on both axes.
-func (f Convergence) drawn(step, value float64) bool {
-	return value > 0 && f.Step.holds(step) && f.Value.holds(value)
+// extent is the range of all steps, and of the logarithms of all values above 0.
+func (f Convergence) extent() (x, y [2]float64, any bool) {
+	x, y = [2]float64{math.Inf(1), math.Inf(-1)}, [2]float64{math.Inf(1), math.Inf(-1)}
+	for _, c := range f.Curves {
+		for i, v := range c.Values {
+			x = [2]float64{math.Min(x[0], c.Steps[i]), math.Max(x[1], c.Steps[i])}
+			if v > 0 {
+				y, any = [2]float64{math.Min(y[0], math.Log10(v)), math.Max(y[1], math.Log10(v))}, true
+			}
+		}
+	}
+	return x, y, any
 }
 
-func (f Convergence) key(hidden int) []entry {
+// drawn reports whether a point is on both axes; zeros are at the lower end.
+func (f Convergence) drawn(step, value float64) bool {
+	return f.Step.holds(step) && (value == 0 || f.Value.holds(value))
+}
+
+// reached is the first point from which on a curve is within the tolerance, or -1.
+func (f Convergence) reached(c ConvergenceCurve) int {
+	first := len(c.Values)
+	for first > 0 && c.Values[first-1] <= f.Tolerance {
+		first--
+	}
+	if f.Tolerance == 0 || first == len(c.Values) {
+		return -1
+	}
+	return first
+}
+
+func (f Convergence) key() []entry {
 	var key []entry
+	hidden, zeros, ringed := 0, 0, false
 	for i, c := range f.Curves {
 		if c.Name != "" {
 			key = append(key, entry{c.Name, func(s sheet, x, y, w float64) {
@@ -142,9 +158,25 @@ func (f Convergence) key(hidden int) []entry {
 				s.marker(i, x+w/2, y, 1.6, series(i))
 			}})
 		}
+		for j, v := range c.Values {
+			if !f.drawn(c.Steps[j], v) {
+				hidden++
+			} else if v == 0 {
+				zeros++
+			}
+		}
+		if first := f.reached(c); first >= 0 && f.drawn(c.Steps[first], c.Values[first]) {
+			ringed = true
+		}
 	}
 	if f.Tolerance > 0 {
 		key = append(key, entry{"tolerance " + quantity(f.Tolerance, f.Value.Unit), func(s sheet, x, y, w float64) { s.broken(x, y, x+w, y, 0.8, muted) }})
+	}
+	if ringed {
+		key = append(key, entry{"within it from here on", func(s sheet, x, y, w float64) { s.ring(x+w/2, y, 3.2, 0.8, ink) }})
+	}
+	if zeros > 0 {
+		key = append(key, entry{text: counted(zeros, "value") + " of 0, at the lower end"})
 	}
 	return append(key, hiddenEntry(hidden, "point")...)
 }
@@ -152,36 +184,44 @@ func (f Convergence) key(hidden int) []entry {
 func (f Convergence) paint(p *panel) {
 	p.draw()
 	if f.Tolerance > 0 {
-		if y := p.y.at(math.Log10(f.Tolerance)); y > p.bottom && y < p.top {
+		if y := p.y.at(math.Log10(f.Tolerance)); y >= p.bottom && y <= p.top {
 			p.broken(p.left, y, p.right, y, 0.8, muted)
 		}
 	}
 	for n, c := range f.Curves {
-		var points []vg.Point
-		passed := -1
-		for i, v := range c.Values {
-			if v > f.Tolerance {
-				passed = -1
-			} else if passed < 0 {
-				passed = i
-			}
-			if v > 0 {
-				points = append(points, at(p.x.at(c.Steps[i]), p.y.at(math.Log10(v))))
-			}
-		}
+		points := f.places(p, c)
 		for _, piece := range p.cutLines(points) {
 			p.path(piece, 0.9, series(n))
 		}
-		for i, v := range c.Values {
-			if !f.drawn(c.Steps[i], v) {
-				continue
+		last := math.Inf(-1)
+		for i, pt := range points {
+			if x := float64(pt.X); f.drawn(c.Steps[i], c.Values[i]) && x-last >= markPitch {
+				p.marker(n, x, float64(pt.Y), 1.6, series(n))
+				last = x
 			}
-			x, y := p.x.at(c.Steps[i]), p.y.at(math.Log10(v))
-			if i == passed {
-				p.disc(x, y, 3.4, series(n))
-				p.disc(x, y, 2.4, white)
-			}
-			p.marker(n, x, y, 1.6, series(n))
 		}
 	}
+	for n, c := range f.Curves {
+		if i := f.reached(c); i >= 0 && f.drawn(c.Steps[i], c.Values[i]) {
+			pt := f.places(p, c)[i]
+			p.ring(float64(pt.X), float64(pt.Y), 3.2, 2, white)
+			p.ring(float64(pt.X), float64(pt.Y), 3.2, 0.8, series(n))
+		}
+	}
+}
+
+// markPitch is the least distance of the marks of a curve.
+const markPitch = 5.0
+
+// places are those of all points of a curve on the page.
+func (f Convergence) places(p *panel, c ConvergenceCurve) []vg.Point {
+	var points []vg.Point
+	for i, v := range c.Values {
+		y := p.bottom
+		if v > 0 {
+			y = p.y.at(math.Log10(v))
+		}
+		points = append(points, at(p.x.at(c.Steps[i]), y))
+	}
+	return points
 }

@@ -2,43 +2,106 @@ package report
 
 import "strconv"
 
-// Data returns the levels: sector, level, and how many the theory predicts there.
+// Data returns the levels: sector, energy as given and, if Relative, less the lowest, how
+// many levels the theory predicts in the sector, and whether the level belongs to the
+// manifold (nothing without one). A sector without levels has a row without energy.
 // Errors: those of Write about the data.
 func (f SectorSpectrum) Data() (Table, error) {
 	if _, _, err := f.plan(); err != nil {
 		return Table{}, err
 	}
-	t := Table{Columns: []Column{{Title: "sector"}, {Title: named(f.Energy, "energy"), Unit: f.Energy.Unit}, {Title: "levels predicted in the sector"}}}
+	t := Table{Columns: append([]Column{{Title: "sector"}}, energyColumns(f.Energy, f.Relative)...)}
+	t.Columns = append(t.Columns, Column{Title: "levels predicted in the sector"}, Column{Title: "in the manifold"})
+	_, levels, err := f.columns()
+	if err != nil {
+		return Table{}, err
+	}
+	lowest := gather(levels)[0].value
+	inside, err := members(levels, f.Manifold)
+	if err != nil {
+		return Table{}, err
+	}
 	for i, s := range f.Sectors {
-		for _, e := range s.Levels {
-			t.Add(labelled(s.Label, i), e, s.Predicted)
+		for j, e := range s.Levels {
+			row := []any{labelled(s.Label, i), e}
+			if f.Relative {
+				row = append(row, e-lowest)
+			}
+			t.Add(append(row, s.Predicted, inside[i][j])...)
+		}
+		if len(s.Levels) == 0 {
+			row := []any{labelled(s.Label, i), nil}
+			if f.Relative {
+				row = append(row, nil)
+			}
+			t.Add(append(row, s.Predicted, nil)...)
 		}
 	}
 	return t, nil
 }
 
-// Data returns the levels, each with what was expected in its sector, nothing where
-// no counts are. Errors: those of Write about the data.
+// energyColumns heads the energies as given and, if they are drawn so, less the lowest.
+func energyColumns(a Axis, relative bool) []Column {
+	if !relative {
+		return []Column{{Title: named(a, "energy"), Unit: a.Unit}}
+	}
+	return []Column{{Title: "energy", Unit: a.Unit}, {Title: named(a, "E − E0"), Unit: a.Unit}}
+}
+
+// members says of each level of each column whether it is one of the count lowest; the
+// cells are empty for a count of 0.
+func members(columns [][]float64, count int) ([][]any, error) {
+	cells := make([][]any, len(columns))
+	for c, levels := range columns {
+		cells[c] = make([]any, len(levels))
+	}
+	all := gather(columns)
+	if count == 0 {
+		return cells, nil
+	}
+	if _, err := manifold(all, count); err != nil {
+		return nil, err
+	}
+	for _, p := range all {
+		cells[p.column][p.index] = p.manifold
+	}
+	return cells, nil
+}
+
+// Data returns the levels, each with what was expected in its sector (nothing where no
+// counts are) and whether it lies below the line (nothing without one). A sector without
+// levels has a row without level. Errors: those of Write about the data.
 func (f EntanglementSpectrum) Data() (Table, error) {
 	if _, _, err := f.plan(); err != nil {
 		return Table{}, err
 	}
-	t := Table{Columns: []Column{{Title: "sector"}, {Title: named(f.Xi, "entanglement level"), Unit: f.Xi.Unit}, {Title: "levels expected in the sector"}}}
+	t := Table{Columns: []Column{{Title: "sector"}, {Title: named(f.Xi, "entanglement level"), Unit: f.Xi.Unit}, {Title: "levels expected in the sector"}, {Title: "below the line"}}}
+	_, levels, err := f.columns()
+	if err != nil {
+		return Table{}, err
+	}
+	inside, err := members(levels, f.Below)
+	if err != nil {
+		return Table{}, err
+	}
 	for i, s := range f.Sectors {
 		var expected any
 		if f.Expected != nil {
 			expected = f.Expected[i]
 		}
-		for _, x := range s.Levels {
-			t.Add(labelled(s.Label, i), x, expected)
+		for j, x := range s.Levels {
+			t.Add(labelled(s.Label, i), x, expected, inside[i][j])
+		}
+		if len(s.Levels) == 0 {
+			t.Add(labelled(s.Label, i), nil, expected, nil)
 		}
 	}
 	return t, nil
 }
 
 // Data returns points and lines: flux, energy, the name of the line (or its index;
-// nothing for points) and whether it belongs to the manifold. Errors: those of Write
-// about the data.
+// nothing for points) and whether the level belongs to the manifold (nothing for points
+// without one). Errors: those of Write about the data.
 func (f SpectralFlow) Data() (Table, error) {
 	if _, _, err := f.plan(); err != nil {
 		return Table{}, err
@@ -49,8 +112,12 @@ func (f SpectralFlow) Data() (Table, error) {
 	}
 	t := Table{Columns: []Column{{Title: named(f.FluxAxis, "flux"), Unit: unit}, {Title: named(f.Energy, "energy"), Unit: f.Energy.Unit}, {Title: "line"}, {Title: "in the manifold"}}}
 	for i, levels := range f.Levels {
-		for _, e := range levels {
-			t.Add(f.Flux[i], e, nil, nil)
+		inside, err := members([][]float64{levels}, f.Manifold)
+		if err != nil {
+			return Table{}, err
+		}
+		for j, e := range levels {
+			t.Add(f.Flux[i], e, nil, inside[0][j])
 		}
 	}
 	for n, line := range f.Flows {

@@ -32,7 +32,7 @@ type frame struct {
 	whole  bool // ticks at whole numbers only
 	yAxis  Axis
 	yRange [2]float64
-	// decades says that yRange are powers of ten, and labels the ticks so.
+	// decades says that yRange are decadic logarithms of the ends of the axis.
 	decades bool
 	key     func(columns) []entry
 	strip   func(columns) float64 // height kept free above the plotting area; may be nil
@@ -111,8 +111,8 @@ func (p *panel) divide() error {
 	} else {
 		p.x = numbersBelow(p.frame, p.left, p.right)
 		if p.marks != nil {
-			p.x.ticks = p.marks
-			p.x.ticks = p.x.apart()
+			p.x.ticks, p.x.title = p.marks, title(p.xAxis, "", 0, 0)
+			p.x.ticks = p.x.thinned()
 		}
 	}
 	var err error
@@ -124,14 +124,13 @@ func (p *panel) divide() error {
 	if p.top-p.bottom < leastSide {
 		return fmt.Errorf("%w: %.0f mm are left for the height of the plot; %s", ErrSize, (p.top-p.bottom)/perMillimetre, useful)
 	}
-	p.y = newScale(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22, p.decades)
+	if p.decades {
+		p.y = newDecades(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22)
+	} else {
+		p.y = newScale(p.yAxis, p.yRange[0], p.yRange[1], p.bottom, p.top, 22, false)
+	}
 	if p.bar != nil {
 		p.bar.place(p.bottom, p.top)
-	}
-	if p.decades {
-		for i, t := range p.y.ticks {
-			p.y.ticks[i].label = "10^{" + decimal(t.value, 0) + "}"
-		}
 	}
 	return nil
 }
@@ -159,6 +158,21 @@ func (s scale) apart() []tick {
 		}
 	}
 	return kept
+}
+
+// thinned returns all ticks, without the labels that apart leaves out.
+func (s scale) thinned() []tick {
+	kept := s.apart()
+	var all []tick
+	for _, t := range s.ticks {
+		if len(kept) > 0 && kept[0] == t {
+			kept = kept[1:]
+		} else {
+			t.label = ""
+		}
+		all = append(all, t)
+	}
+	return all
 }
 
 func (p *panel) noteHeight() float64 {
@@ -280,6 +294,10 @@ func (p *panel) draw() {
 	} else {
 		for _, t := range p.x.ticks {
 			x := p.x.at(t.value)
+			if t.label == "" {
+				p.line(x, p.bottom, x, p.bottom-tickLength/2, lineWidth, ink)
+				continue
+			}
 			p.line(x, p.bottom, x, p.bottom-tickLength, lineWidth, ink)
 			p.text(t.label, tickSize, x, p.bottom-tickLength-labelGap-capital*tickSize, 0.5, ink)
 		}

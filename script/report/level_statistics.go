@@ -23,12 +23,39 @@ const (
 // ascending order of the levels. Only the middle part of the levels is used: a part of
 // 1/2 leaves out a quarter at each end; 0 means all. The levels must be those of one
 // sector of all symmetries: levels of several sectors have no correlations, whatever
-// each of them has.
+// each of them has. The ratios of several sectors may then be taken together.
 //
 // Errors: ErrData for numbers that are not finite, a part outside 0 to 1, fewer than
-// three levels in the part, and neighbouring spacings that are both zero: degenerate
-// levels, that is, a symmetry that has not been used.
+// three levels in the part, and degenerate levels, that is, neighbours at most 10⁻¹³ times
+// the largest magnitude apart: their ratios are those of rounding, and they tell of
+// a symmetry that has not been used.
 func SpacingRatios(levels []float64, middle float64) ([]float64, error) {
+	sorted, err := middleOf(levels, middle)
+	if err != nil {
+		return nil, err
+	}
+	limit := degenerateSpacing * math.Max(math.Abs(sorted[0]), math.Abs(sorted[len(sorted)-1]))
+	spacings := make([]float64, len(sorted)-1)
+	for i := range spacings {
+		if spacings[i] = sorted[i+1] - sorted[i]; spacings[i] <= limit {
+			return nil, fmt.Errorf("%w: two levels are degenerate, %v and %v; use one sector of all symmetries, or keep one of each such group", ErrData, sorted[i], sorted[i+1])
+		}
+	}
+	ratios := make([]float64, len(spacings)-1)
+	for i := range ratios {
+		s, t := spacings[i], spacings[i+1]
+		ratios[i] = math.Min(s, t) / math.Max(s, t)
+	}
+	return ratios, nil
+}
+
+// degenerateSpacing is the spacing, in units of the largest magnitude of the levels, up to
+// which SpacingRatios calls them degenerate: several times what dense diagonalisation in
+// double precision rounds.
+const degenerateSpacing = 1e-13
+
+// middleOf checks the levels and returns the middle part in ascending order.
+func middleOf(levels []float64, middle float64) ([]float64, error) {
 	if !(middle >= 0 && middle <= 1) {
 		return nil, fmt.Errorf("%w: the middle part %v of the levels; give a number from 0 to 1", ErrData, middle)
 	}
@@ -46,15 +73,7 @@ func SpacingRatios(levels []float64, middle float64) ([]float64, error) {
 	if len(sorted) < 3 {
 		return nil, fmt.Errorf("%w: %d levels have no ratio of spacings; give three at least", ErrData, len(sorted))
 	}
-	var ratios []float64
-	for i := 0; i+2 < len(sorted); i++ {
-		s, t := sorted[i+1]-sorted[i], sorted[i+2]-sorted[i+1]
-		if s == 0 && t == 0 {
-			return nil, fmt.Errorf("%w: three levels are equal to %v; use one sector of all symmetries", ErrData, sorted[i])
-		}
-		ratios = append(ratios, math.Min(s, t)/math.Max(s, t))
-	}
-	return ratios, nil
+	return sorted, nil
 }
 
 // LevelStatistics draws the distribution of ratios of neighbouring spacings beside
@@ -62,7 +81,9 @@ func SpacingRatios(levels []float64, middle float64) ([]float64, error) {
 //
 //	Poisson P(r) = 2/(1+r)²,   P(r) ∝ (r+r²)^β/(1+r+r²)^(1+3β/2), β = 1, 2
 //
-// (Atas et al. 2013, surmises of 3×3 matrices), with the means in the key.
+// (Atas et al. 2013, surmises of 3×3 matrices), with the means in the key. The standard
+// error of the mean there takes the ratios as independent; neighbouring ones share a
+// spacing.
 type LevelStatistics struct {
 	Page Page
 	// Ratios from SpacingRatios, of one or more sectors together.
@@ -81,17 +102,24 @@ func (f LevelStatistics) Write(w io.Writer, format string) error {
 	return write(w, format, "LevelStatistics", f.plan)
 }
 
-// Data returns the histogram: from, to, how many ratios and their density. Errors:
-// those of Write about the data.
+// Data returns the histogram: from, to, how many ratios, their density, and that of each
+// curve at the middle of the bin. Errors: those of Write about the data.
 func (f LevelStatistics) Data() (Table, error) {
 	counts, err := f.counts()
 	if err != nil {
 		return Table{}, err
 	}
 	t := Table{Columns: []Column{{Title: "r from"}, {Title: "r to"}, {Title: "ratios"}, {Title: "density"}}}
+	for _, c := range f.references() {
+		t.Columns = append(t.Columns, Column{Title: c.name + " density at the middle"})
+	}
 	n := float64(len(counts))
-	for i, c := range counts {
-		t.Add(float64(i)/n, float64(i+1)/n, c, float64(c)*n/float64(len(f.Ratios)))
+	for i, count := range counts {
+		row := []any{float64(i) / n, float64(i+1) / n, count, float64(count) * n / float64(len(f.Ratios))}
+		for _, c := range f.references() {
+			row = append(row, c.density((float64(i)+0.5)/n))
+		}
+		t.Add(row...)
 	}
 	return t, nil
 }
@@ -195,6 +223,9 @@ func (f LevelStatistics) paint(p *panel, density []float64) {
 	}
 	p.draw()
 	for i, d := range density {
+		if d == 0 {
+			continue
+		}
 		x0, x1, y := p.x.at(float64(i)/n), p.x.at(float64(i+1)/n), p.y.at(d)
 		p.path([]vg.Point{at(x0, p.bottom), at(x0, y), at(x1, y), at(x1, p.bottom)}, 0.4, muted)
 	}

@@ -17,6 +17,7 @@ const MostMagnitude = 1e15
 type placed struct {
 	value    float64
 	column   int
+	index    int // in the levels of the column
 	manifold bool
 }
 
@@ -42,8 +43,8 @@ func called(kind string, i int, name string) string {
 func gather(columns [][]float64) []placed {
 	var all []placed
 	for c, levels := range columns {
-		for _, v := range levels {
-			all = append(all, placed{value: v, column: c})
+		for i, v := range levels {
+			all = append(all, placed{value: v, column: c, index: i})
 		}
 	}
 	slices.SortStableFunc(all, func(a, b placed) int {

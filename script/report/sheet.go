@@ -59,8 +59,22 @@ func (s sheet) box(x0, y0, x1, y1 float64, c color.Color) {
 	s.area(c, at(x0, y0), at(x1, y0), at(x1, y1), at(x0, y1))
 }
 
-// disc fills a circle made of four cubic curves, which all canvases draw alike.
+// disc fills a circle.
 func (s sheet) disc(x, y, r float64, c color.Color) {
+	s.canvas.SetColor(c)
+	s.canvas.Fill(circle(x, y, r))
+}
+
+// ring draws the line of a circle.
+func (s sheet) ring(x, y, r, thick float64, c color.Color) {
+	s.canvas.SetColor(c)
+	s.canvas.SetLineWidth(vg.Length(thick))
+	s.canvas.SetLineDash(nil, 0)
+	s.canvas.Stroke(circle(x, y, r))
+}
+
+// circle is made of four cubic curves, which all canvases draw alike.
+func circle(x, y, r float64) vg.Path {
 	k := r * 4 / 3 * (math.Sqrt2 - 1)
 	var p vg.Path
 	p.Move(at(x+r, y))
@@ -69,8 +83,7 @@ func (s sheet) disc(x, y, r float64, c color.Color) {
 	p.CubeTo(at(x-r, y-k), at(x-k, y-r), at(x, y-r))
 	p.CubeTo(at(x+k, y-r), at(x+r, y-k), at(x+r, y))
 	p.Close()
-	s.canvas.SetColor(c)
-	s.canvas.Fill(p)
+	return p
 }
 
 // marker draws the filled mark of series i about (x, y): disc, square, triangle,

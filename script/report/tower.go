@@ -3,7 +3,10 @@ package report
 import (
 	"fmt"
 	"io"
+	"maps"
 	"math"
+	"slices"
+	"strconv"
 
 	"gonum.org/v1/plot/vg"
 )
@@ -19,10 +22,10 @@ type TowerSeries struct {
 	Energies []float64
 }
 
-// Tower draws energy against S(S+1): the tower of states of an ordered magnet lies on
-// a straight line (P. W. Anderson, Phys. Rev. 86, 694 (1952); B. Bernu, C. Lhuillier,
-// L. Pierre, Phys. Rev. Lett. 69, 2590 (1992)). Marks of different series at the same
-// spin stand side by side.
+// Tower draws energy against S(S+1), with the spins S below: the tower of states of an
+// ordered magnet lies on a straight line (P. W. Anderson, Phys. Rev. 86, 694 (1952);
+// B. Bernu, C. Lhuillier, L. Pierre, Phys. Rev. Lett. 69, 2590 (1992)). Marks of different
+// series at the same spin stand side by side, about the place of the spin.
 type Tower struct {
 	Page   Page
 	Series []TowerSeries
@@ -31,8 +34,8 @@ type Tower struct {
 	// Relative draws all levels less the lowest; the default title is then "E − E_{0}".
 	Relative bool
 	// Line draws the least-squares line through the lowest level of each spin, up to
-	// the spin Upto (twice; 0 means all), and prints its slope in the key: 1/(2χN), with
-	// the uniform susceptibility χ a site, where the tower is one.
+	// twice the spin Upto (0 means all), and prints its slope in the key: 1/(2χN) for N
+	// sites, with the uniform susceptibility χ a site, where the tower is one.
 	Line bool
 	Upto int
 }
@@ -43,16 +46,21 @@ func (f Tower) Save(path string) error { return save(path, "Tower", f.plan) }
 // Write writes the figure in the format svg, png or pdf.
 func (f Tower) Write(w io.Writer, format string) error { return write(w, format, "Tower", f.plan) }
 
-// Data returns the levels: series, total spin, S(S+1) and energy as given. Errors:
-// those of Write about the data.
+// Data returns the levels: series, total spin, S(S+1) and energy as given; and, if
+// Relative, less the lowest. Errors: those of Write about the data.
 func (f Tower) Data() (Table, error) {
 	if _, _, err := f.plan(); err != nil {
 		return Table{}, err
 	}
-	t := Table{Columns: []Column{{Title: "series"}, {Title: "S"}, {Title: "S(S+1)"}, {Title: named(f.Energy, "energy"), Unit: f.Energy.Unit}}}
+	t := Table{Columns: append([]Column{{Title: "series"}, {Title: "S"}, {Title: "S(S+1)"}}, energyColumns(f.Energy, f.Relative)...)}
+	lowest, _ := f.extent()
 	for n, s := range f.Series {
 		for i, twice := range s.TwiceS {
-			t.Add(labelled(s.Name, n), float64(twice)/2, casimir(twice), s.Energies[i])
+			row := []any{labelled(s.Name, n), float64(twice) / 2, casimir(twice), s.Energies[i]}
+			if f.Relative {
+				row = append(row, s.Energies[i]-lowest)
+			}
+			t.Add(row...)
 		}
 	}
 	return t, nil
@@ -65,12 +73,8 @@ func (f Tower) plan() (*panel, func(), error) {
 	if err := f.check(); err != nil {
 		return nil, nil, err
 	}
-	lowest, highest, most := math.Inf(1), math.Inf(-1), 0
-	for _, s := range f.Series {
-		for i, e := range s.Energies {
-			lowest, highest, most = math.Min(lowest, e), math.Max(highest, e), max(most, s.TwiceS[i])
-		}
-	}
+	lowest, highest := f.extent()
+	spins := f.spins()
 	axis, zero := f.Energy.or("Energy"), 0.0
 	if f.Relative {
 		axis, zero = f.Energy.or("E − E_{0}"), lowest
@@ -84,7 +88,7 @@ func (f Tower) plan() (*panel, func(), error) {
 		line = &l
 	}
 	yLo, yHi := span(axis, lowest-zero, highest-zero, 0.06)
-	xLo, xHi := span(Axis{}, 0, math.Max(casimir(most), 0.75), 0.06)
+	xLo, xHi := span(Axis{}, 0, math.Max(casimir(spins[len(spins)-1]), 0.75), 0.06)
 	hidden := 0
 	for _, s := range f.Series {
 		for _, e := range s.Energies {
@@ -95,13 +99,46 @@ func (f Tower) plan() (*panel, func(), error) {
 	}
 	p, err := frame{
 		page: f.Page.filled(), name: "Energy against total spin",
-		xAxis: Axis{Title: "S(S+1)"}, xRange: [2]float64{xLo, xHi},
+		xAxis: Axis{Title: "Total spin S, placed at S(S+1)"}, xRange: [2]float64{xLo, xHi}, marks: spinTicks(spins),
 		yAxis: axis, yRange: [2]float64{yLo, yHi}, key: func(columns) []entry { return f.key(line, hidden) },
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
 	}
-	return p, func() { f.paint(p, line, zero) }, nil
+	return p, func() { f.paint(p, spins, line, zero) }, nil
+}
+
+// extent is the range of the energies.
+func (f Tower) extent() (lowest, highest float64) {
+	lowest, highest = math.Inf(1), math.Inf(-1)
+	for _, s := range f.Series {
+		for _, e := range s.Energies {
+			lowest, highest = math.Min(lowest, e), math.Max(highest, e)
+		}
+	}
+	return lowest, highest
+}
+
+// spins are twice the spins that occur, ascending.
+func (f Tower) spins() []int {
+	var all []int
+	for _, s := range f.Series {
+		all = append(all, s.TwiceS...)
+	}
+	slices.Sort(all)
+	return slices.Compact(all)
+}
+
+func spinTicks(spins []int) []tick {
+	var ticks []tick
+	for _, twice := range spins {
+		label := strconv.Itoa(twice / 2)
+		if twice%2 != 0 {
+			label = strconv.Itoa(twice) + "/2"
+		}
+		ticks = append(ticks, tick{casimir(twice), label})
+	}
+	return ticks
 }
 
 func (f Tower) check() error {
@@ -122,7 +159,7 @@ func (f Tower) check() error {
 		}
 		for i, twice := range s.TwiceS {
 			if twice < 0 || twice > 1<<20 {
-				return fmt.Errorf("%w: level %d of %s has twice the spin %d; give 0 or more", ErrData, i, who, twice)
+				return fmt.Errorf("%w: level %d of %s has twice the spin %d; give 0 to %d", ErrData, i, who, twice, 1<<20)
 			}
 			if err := checkNumber(fmt.Sprintf("energy %d of %s", i, who), s.Energies[i]); err != nil {
 				return err
@@ -133,8 +170,8 @@ func (f Tower) check() error {
 	if levels == 0 {
 		return fmt.Errorf("%w: a tower without levels; give at least one", ErrData)
 	}
-	if f.Upto < 0 {
-		return fmt.Errorf("%w: a line up to twice the spin %d; give 0 for all, or a spin", ErrData, f.Upto)
+	if f.Upto < 0 || f.Upto > 0 && !f.Line {
+		return fmt.Errorf("%w: Upto %d; give twice the spin where the line ends, 0 for all spins or without a line", ErrData, f.Upto)
 	}
 	return nil
 }
@@ -157,15 +194,20 @@ func (f Tower) fit(zero float64) (straight, error) {
 	if len(lowest) < 2 {
 		return straight{}, fmt.Errorf("%w: a line through the lowest levels of %d spins; give levels of two spins at least, or no line", ErrData, len(lowest))
 	}
-	var n, x, y, xx, xy, end float64
-	for twice := 0; twice <= 1<<20 && int(n) < len(lowest); twice++ {
-		if e, known := lowest[twice]; known {
-			a, b := casimir(twice), e-zero
-			n, x, y, xx, xy, end = n+1, x+a, y+b, xx+a*a, xy+a*b, a
-		}
+	var x, y, end float64 // means, and the last place
+	spins := slices.Sorted(maps.Keys(lowest))
+	for i, twice := range spins {
+		end = casimir(twice)
+		x += (end - x) / float64(i+1)
+		y += (lowest[twice] - zero - y) / float64(i+1)
 	}
-	slope := (n*xy - x*y) / (n*xx - x*x)
-	return straight{(y - slope*x) / n, slope, end}, nil
+	var xx, xy float64
+	for _, twice := range spins {
+		d := casimir(twice) - x
+		xx, xy = xx+d*d, xy+d*(lowest[twice]-zero-y)
+	}
+	slope := xy / xx
+	return straight{y - slope*x, slope, end}, nil
 }
 
 func (f Tower) key(line *straight, hidden int) []entry {
@@ -176,27 +218,51 @@ func (f Tower) key(line *straight, hidden int) []entry {
 		}
 	}
 	if line != nil {
-		key = append(key, entry{"slope " + quantity(line.slope, f.Energy.Unit), func(s sheet, x, y, w float64) { s.broken(x, y, x+w, y, 0.8, muted) }})
+		key = append(key, entry{"slope 1/(2χN) = " + quantity(line.slope, f.Energy.Unit), func(s sheet, x, y, w float64) { s.broken(x, y, x+w, y, 0.8, muted) }})
 	}
 	return append(key, hiddenEntry(hidden, "level")...)
 }
 
-func (f Tower) paint(p *panel, line *straight, zero float64) {
+func (f Tower) paint(p *panel, spins []int, line *straight, zero float64) {
 	p.draw()
-	if line != nil {
-		points := []vg.Point{at(p.x.at(0), p.y.at(line.offset)), at(p.x.at(line.end), p.y.at(line.offset+line.slope*line.end))}
-		for _, piece := range p.cutLines(points) {
-			a, b := piece[0], piece[len(piece)-1]
-			p.broken(float64(a.X), float64(a.Y), float64(b.X), float64(b.Y), 0.8, muted)
-		}
-	}
-	apart := math.Min(3.2, 14/math.Max(1, float64(len(f.Series))))
+	apart, size := f.spacing(p, spins)
 	for n, s := range f.Series {
-		aside := (float64(n) - float64(len(f.Series)-1)/2) * apart
 		for i, e := range s.Energies {
 			if p.yAxis.holds(e - zero) {
-				p.marker(n, math.Max(p.left, p.x.at(casimir(s.TwiceS[i]))+aside), p.y.at(e-zero), 2, series(n))
+				aside := (float64(n) - float64(len(f.Series)-1)/2) * apart[s.TwiceS[i]]
+				p.marker(n, math.Max(p.left, p.x.at(casimir(s.TwiceS[i]))+aside), p.y.at(e-zero), size, series(n))
 			}
 		}
 	}
+	if line == nil {
+		return
+	}
+	points := []vg.Point{at(p.x.at(0), p.y.at(line.offset)), at(p.x.at(line.end), p.y.at(line.offset+line.slope*line.end))}
+	for _, piece := range p.cutLines(points) {
+		a, b := piece[0], piece[len(piece)-1]
+		p.broken(float64(a.X), float64(a.Y), float64(b.X), float64(b.Y), 0.8, muted)
+	}
+}
+
+// spacing is the distance of neighbouring series at each spin (twice), and the size of the
+// marks: those of one spin take three fifths of the way to the nearest other spin.
+func (f Tower) spacing(p *panel, spins []int) (apart map[int]float64, size float64) {
+	const widest = 14.0
+	rooms := make([]float64, len(spins))
+	least := widest
+	for i, twice := range spins {
+		rooms[i] = widest
+		for _, other := range []int{i - 1, i + 1} {
+			if other >= 0 && other < len(spins) {
+				rooms[i] = math.Min(rooms[i], 0.6*math.Abs(p.x.at(casimir(spins[other]))-p.x.at(casimir(twice))))
+			}
+		}
+		least = math.Min(least, rooms[i])
+	}
+	size = math.Max(1.3, math.Min(2, least/2))
+	apart = map[int]float64{}
+	for i, twice := range spins {
+		apart[twice] = math.Min(3.2, math.Max(0, rooms[i]-2*size)/math.Max(1, float64(len(f.Series)-1)))
+	}
+	return apart, size
 }
