@@ -109,13 +109,17 @@ func (f Convergence) plan() (*panel, func(), error) {
 	p, err := frame{
 		page: f.Page.filled(), name: "Convergence of a run",
 		xAxis: f.Step, xRange: [2]float64{xLo, xHi}, yAxis: axis, yRange: y, decades: true,
-		key: func(columns) []entry { return f.key() },
+		key:   func(columns) []entry { return f.key() },
+		strip: func(columns) float64 { return raisedRoom },
 	}.arrange()
 	if err != nil {
 		return nil, nil, err
 	}
 	return p, func() { f.paint(p) }, nil
 }
+
+// raisedRoom is kept free below the key for the raised letters of the uppermost tick.
+const raisedRoom = 2.0
 
 // extent is the range of all steps, and of the logarithms of all values above 0.
 func (f Convergence) extent() (x, y [2]float64, any bool) {

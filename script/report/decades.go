@@ -3,9 +3,9 @@ package report
 import "math"
 
 // newDecades makes the logarithmic scale of an axis: min and max are decadic logarithms
-// of its ends, and ticks stand at powers of ten, at least apart points from each other;
-// where less than two of these lie on the axis, at 1, 2 and 5 (or 1 and 3, if there is no
-// room) times a power; and on less than seven tenths of a decade, at equal steps.
+// of its ends, and ticks stand at powers of ten, apart points from each other or a little
+// less; where less than two of these lie on the axis, at 1, 2 and 5 (or 1 and 3, if there
+// is no room) times a power; and on less than seven tenths of a decade, at equal steps.
 func newDecades(a Axis, min, max, from, to, apart float64) scale {
 	s := scale{min: min, max: max, from: from, to: to, title: title(a, "", 0, 0)}
 	pitch := (to - from) / (max - min) // of one decade
@@ -14,33 +14,46 @@ func newDecades(a Axis, min, max, from, to, apart float64) scale {
 		each = digit * math.Pow(10, float64(exponent))
 	}
 	const slack = 1e-9 // of a decade
-	for n := math.Ceil((min-slack)/each) * each; n <= max+slack; n += each {
-		s.ticks = append(s.ticks, tick{n, "10^{" + decimal(n, 0) + "}"})
+	for s.ticks = powers(min-slack, max+slack, each); len(s.ticks) < 2 && each > 1; {
+		each = math.Ceil(each / 2)
+		s.ticks = powers(min-slack, max+slack, each)
 	}
-	if len(s.ticks) >= 2 {
-		return s
-	}
-	if max-min < evenBelow {
+	switch {
+	case len(s.ticks) >= 2:
+	case max-min < evenBelow:
 		even := newScale(a, math.Pow(10, min), math.Pow(10, max), from, to, apart, false)
 		s.ticks, s.title = even.ticks, even.title
 		for i := range s.ticks {
 			s.ticks[i].value = math.Log10(s.ticks[i].value)
 		}
-		return s
+	case math.Log10(2)*pitch < 1.3*tickSize:
+		s.ticks = multiples(min-slack, max+slack, 1, 3)
+	default:
+		s.ticks = multiples(min-slack, max+slack, 1, 2, 5)
 	}
-	s.ticks = nil
-	digits := []float64{1, 2, 5}
-	if math.Log10(2)*pitch < 1.3*tickSize {
-		digits = []float64{1, 3}
-	}
-	for n := math.Floor(min - slack); n <= max+slack; n++ {
+	return s
+}
+
+// multiples puts a tick at each of the digits times each power of ten.
+func multiples(min, max float64, digits ...float64) []tick {
+	var ticks []tick
+	for n := math.Floor(min); n <= max; n++ {
 		for _, digit := range digits {
-			if at := n + math.Log10(digit); at >= min-slack && at <= max+slack {
-				s.ticks = append(s.ticks, tick{at, short(power(digit, int(n)))})
+			if at := n + math.Log10(digit); at >= min && at <= max {
+				ticks = append(ticks, tick{at, short(power(digit, int(n)))})
 			}
 		}
 	}
-	return s
+	return ticks
+}
+
+// powers puts a tick at each power of ten that is a multiple of each.
+func powers(min, max, each float64) []tick {
+	var ticks []tick
+	for n := math.Ceil(min/each) * each; n <= max; n += each {
+		ticks = append(ticks, tick{n, "10^{" + decimal(n, 0) + "}"})
+	}
+	return ticks
 }
 
 // evenBelow is the length of an axis, in decades, that has ticks at equal steps: the
