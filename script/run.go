@@ -86,7 +86,7 @@ func execute(ctx context.Context, run *machine.Run, src *source, p *lower.Progra
 		}
 		return src.outcome(end.Code(), end.Panic())
 	case err := <-failed:
-		return src.early(run, p, err)
+		return src.early(run, p, err, o)
 	case <-ctx.Done():
 		if context.Cause(ctx) == errTime {
 			return src.limit("time", o.Time.String(), run.At())
@@ -106,10 +106,13 @@ func compile(i *interp.Interpreter, text string) (prog *interp.Program, err erro
 }
 
 // early is the result of an execution that ended before main was seen to end.
-func (s *source) early(run *machine.Run, p *lower.Program, err error) error {
+func (s *source) early(run *machine.Run, p *lower.Program, err error, o Options) error {
 	select {
-	case o := <-run.Ended():
-		return s.outcome(o.Code(), o.Panic())
+	case end := <-run.Ended(): // both were there, and the other was taken
+		if pos, over := end.Steps(); over {
+			return s.limit("steps", fmt.Sprintf("%d steps", o.Steps), pos)
+		}
+		return s.outcome(end.Code(), end.Panic())
 	default:
 	}
 	if err == nil {
